@@ -1,0 +1,94 @@
+#include "base/arena.h"
+
+#include <stdarg.h>
+#include <stdint.h>
+#include <stdio.h>
+#include <stdlib.h>
+#include <string.h>
+
+typedef struct block {
+	struct block *before, *after;
+	max_align_t data[];
+} block;
+
+struct bh_arena {
+	block head; /* a ring: empty when it points at itself */
+};
+
+bh_arena *bh_arena_new(void)
+{
+	bh_arena *arena = calloc(1, sizeof *arena);
+
+	if (arena)
+		arena->head.before = arena->head.after = &arena->head;
+	return arena;
+}
+
+void bh_arena_free(bh_arena *arena)
+{
+	if (!arena)
+		return;
+	for (block *b = arena->head.after; b != &arena->head;) {
+		block *next = b->after;
+
+		free(b);
+		b = next;
+	}
+	free(arena);
+}
+
+void *bh_arena_take(bh_arena *arena, size_t count, size_t size)
+{
+	block *b;
+
+	if (size && count > (SIZE_MAX - sizeof *b) / size)
+		return NULL;
+	b = calloc(1, sizeof *b + count * size);
+	if (!b)
+		return NULL;
+	b->before = &arena->head;
+	b->after = arena->head.after;
+	b->after->before = b;
+	arena->head.after = b;
+	return b->data;
+}
+
+void *bh_arena_resize(bh_arena *arena, void *data, size_t old_count, size_t new_count,
+		      size_t size)
+{
+	block *old;
+	void *bigger = bh_arena_take(arena, new_count, size);
+
+	if (!bigger || !data)
+		return bigger;
+	memcpy(bigger, data, (old_count < new_count ? old_count : new_count) * size);
+	old = (block *)((char *)data - offsetof(block, data));
+	old->before->after = old->after;
+	old->after->before = old->before;
+	free(old);
+	return bigger;
+}
+
+char *bh_arena_text(bh_arena *arena, const char *text)
+{
+	size_t n = strlen(text) + 1;
+	char *copy = bh_new(arena, char, n);
+
+	return copy ? memcpy(copy, text, n) : NULL;
+}
+
+char *bh_arena_format(bh_arena *arena, const char *format, ...)
+{
+	va_list args, again;
+	char *text = NULL;
+	int n;
+
+	va_start(args, format);
+	va_copy(again, args);
+	n = vsnprintf(NULL, 0, format, args);
+	if (n >= 0 && (text = bh_new(arena, char, (size_t)n + 1)))
+		vsnprintf(text, (size_t)n + 1, format, again);
+	va_end(again);
+	va_end(args);
+	return text;
+}

@@ -1,0 +1,45 @@
+#ifndef PHYSICS_STRUCTURE_H
+#define PHYSICS_STRUCTURE_H
+
+#include <stdbool.h>
+
+#include "base/arena.h"
+#include "base/err.h"
+#include "model/phase.h"
+
+/* Displacement parameter used where a site gives none, Å²: common practice for inorganic
+ * solids at room temperature; a plan says where it is used. */
+#define BH_B_ISO_DEFAULT_A2 0.5
+
+/* What of a structure factor to leave out, for comparison with tables. */
+typedef struct {
+	bool anomalous;  /* f' = f'' = 0 */
+} bh_without;
+
+/* Fill volume, site multiplicities, composition, formula text (lowest whole numbers where
+ * they exist, else per cell), formula units in the cell and X-ray density of a phase with
+ * atoms; volume alone for one without atoms.
+ *   false  memory is out */
+bool bh_structure_resolve(bh_phase *phase, bh_arena *arena, bh_err *err);
+
+/* Two sites that clash: closer than within_A, or the same place with occupancies above 1.
+ * Returns true and names the pair and the distance (an image of site i against site j;
+ * i == j: two images of one site). */
+bool bh_structure_clash(const bh_phase *phase, double within_A, size_t *i, size_t *j,
+			double *distance_A);
+
+/* |F|² of one plane, electrons²: ½(|F(h)|² + |F(−h)|²),
+ * F = Σ occ (f0(s) + f' + i f'') exp(−B s²) exp(2πi h·x), all atoms of the cell.
+ *   from  International Tables C (2004), 6.1 */
+double bh_structure_f2(const bh_phase *phase, const int h[3], double d_A, double energy_keV,
+		       bh_without without);
+
+/* The same for many planes and photon energies at once; f2[i·energies + k]. Atoms of the
+ * cell are expanded once.
+ *   false  memory is out */
+bool bh_structure_f2_table(double *f2, bh_arena *arena, const bh_phase *phase,
+			   const int (*h)[3], const double *d_A, size_t planes,
+			   const double *energy_keV, size_t energies, bh_without without,
+			   bh_err *err);
+
+#endif

@@ -1,0 +1,44 @@
+#ifndef PHYSICS_SYMMETRY_H
+#define PHYSICS_SYMMETRY_H
+
+#include <stdbool.h>
+#include <stddef.h>
+
+#include "base/arena.h"
+#include "base/err.h"
+#include "model/phase.h"
+
+/* Door to the space-group database (spglib, 530 settings of the 230 groups). */
+
+/* A space group from what a user writes: Hermann-Mauguin symbol (short, full; blanks and
+ * underscores do not matter; any tabulated setting; ":1" ":2" ":H" ":R" choose origin or
+ * axes), Hall symbol, or number 1 to 230. Without setting: unique axis b, cell choice 1,
+ * hexagonal axes; a group with two origins takes ":1" and sets *origin_open, so that the
+ * caller can ask when there are atoms.
+ *   given    text        as written
+ *   returns  group with operations in the arena
+ *   false    unknown symbol: BH_BAD_INPUT, hint names the nearest symbols
+ *   from     International Tables A */
+bool bh_symmetry_find(bh_space_group *group, bool *origin_open, bh_arena *arena,
+		      const char *text, bh_err *err);
+
+/* The group of one row of the database, 1 to 530. */
+bool bh_symmetry_row(bh_space_group *group, bh_arena *arena, int hall_number, bh_err *err);
+
+/* Largest relative misfit of the metric under the operations: 0 for a cell that the group
+ * allows, e.g. 0.02 for a = 4.9, b = 5.0 in a cubic group. */
+double bh_symmetry_misfit(const bh_space_group *group, const bh_cell *cell);
+
+/* How many values describe a cell of this group, and which: bit 0 to 5 of the result for
+ * a b c α β γ. (Cubic: a; hexagonal axes and tetragonal: a c; rhombohedral axes: a α; ...) */
+unsigned bh_symmetry_free_cell(const bh_space_group *group);
+
+enum { BH_MAX_IMAGES = 192 };
+
+/* All images of a point in the cell, in [0, 1), doubles (closer than within_A) merged.
+ *   returns  how many; images[i] filled */
+size_t bh_symmetry_orbit(const bh_space_group *group, const bh_cell *cell,
+			 const double at[3], double within_A,
+			 double images[BH_MAX_IMAGES][3]);
+
+#endif
