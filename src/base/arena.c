@@ -6,13 +6,17 @@
 #include <stdlib.h>
 #include <string.h>
 
-typedef struct block {
-	struct block *before, *after;
+typedef struct link {
+	struct link *before, *after;
+} link;
+
+typedef struct {
+	link link; /* first: a link is its block */
 	max_align_t data[];
 } block;
 
 struct bh_arena {
-	block head; /* a ring: empty when it points at itself */
+	link ring; /* empty when it points at itself */
 };
 
 bh_arena *bh_arena_new(void)
@@ -20,7 +24,7 @@ bh_arena *bh_arena_new(void)
 	bh_arena *arena = calloc(1, sizeof *arena);
 
 	if (arena)
-		arena->head.before = arena->head.after = &arena->head;
+		arena->ring.before = arena->ring.after = &arena->ring;
 	return arena;
 }
 
@@ -28,11 +32,11 @@ void bh_arena_free(bh_arena *arena)
 {
 	if (!arena)
 		return;
-	for (block *b = arena->head.after; b != &arena->head;) {
-		block *next = b->after;
+	for (link *l = arena->ring.after; l != &arena->ring;) {
+		link *next = l->after;
 
-		free(b);
-		b = next;
+		free(l);
+		l = next;
 	}
 	free(arena);
 }
@@ -46,10 +50,10 @@ void *bh_arena_take(bh_arena *arena, size_t count, size_t size)
 	b = calloc(1, sizeof *b + count * size);
 	if (!b)
 		return NULL;
-	b->before = &arena->head;
-	b->after = arena->head.after;
-	b->after->before = b;
-	arena->head.after = b;
+	b->link.before = &arena->ring;
+	b->link.after = arena->ring.after;
+	b->link.after->before = &b->link;
+	arena->ring.after = &b->link;
 	return b->data;
 }
 
@@ -63,8 +67,8 @@ void *bh_arena_resize(bh_arena *arena, void *data, size_t old_count, size_t new_
 		return bigger;
 	memcpy(bigger, data, (old_count < new_count ? old_count : new_count) * size);
 	old = (block *)((char *)data - offsetof(block, data));
-	old->before->after = old->after;
-	old->after->before = old->before;
+	old->link.before->after = old->link.after;
+	old->link.after->before = old->link.before;
 	free(old);
 	return bigger;
 }

@@ -42,6 +42,7 @@ typedef struct {
 typedef struct {
 	size_t phase, target;        /* of the request                                  */
 	size_t reflection;           /* of the signal; SIZE_MAX when out of reach       */
+	bool rate_known;             /* false: positions only, what needs a rate is 0   */
 	double ka1_deg, ka2_deg;     /* Kα2 0 when a Kα1 monochromator takes it away    */
 	double fwhm_deg;
 	double rate_cps_deg;         /* Kα1 + Kα2, one aperture                         */
@@ -62,6 +63,15 @@ typedef struct {
 	double wall_low_s, wall_high_s;
 } bh_unsure;
 
+/* Where a printed number comes from. */
+typedef struct {
+	const char *what;            /* "net rate of quartz 1 0 1"                      */
+	const char *value;           /* "850 counts/s"                                  */
+	const char *equation;        /* "I = Φ r_e² λ³ m|F|²/v² · ..."                   */
+	const char *inputs;          /* "Φ = 2.1e9 /s, λ = 1.54059 Å, ..."              */
+	const char *source;
+} bh_why;
+
 typedef struct {
 	const char *topic;           /* "before the beam is on", ...                    */
 	const char *text;
@@ -70,8 +80,10 @@ typedef struct {
 typedef struct {
 	double total_s;              /* booked: warm-up, check, ranges, change          */
 	double scanning_s;           /* ranges without their overhead                   */
-	double overhead_s;
-	double constant_scan_s;      /* one even scan that meets the same aims          */
+	double overhead_s;           /* warm-up, reference check, change, per range     */
+	double scout_s;              /* within overhead_s: the scan that settles the throughput */
+	double constant_scan_s;      /* scanning of one even scan over the whole range that
+	                              * meets the same aims; 0: not computed            */
 } bh_times;
 
 typedef struct {
@@ -102,6 +114,10 @@ typedef struct {
 	size_t unsure_count;
 	bh_caution *cautions;
 	size_t caution_count;
+	const char **notes;          /* what was assumed, one sentence each             */
+	size_t note_count;
+	bh_why *whys;
+	size_t why_count;
 	const char *scout;           /* how the scout scan settles the throughput; NULL */
 } bh_plan;
 

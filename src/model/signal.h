@@ -44,9 +44,11 @@ typedef struct {
 	double d_A;
 	int multiplicity;          /* Friedel pairs merged; 0 for a list              */
 	double f2;                 /* |F|² at the first line; 0 without atoms         */
-	double strength_cm_per_g[BH_MAX_LINES]; /* m|F|²/(v² ρ), texture in, by line, cm^-6/(g/cm³) scaled: see rates.h */
+	double f2_lines[BH_MAX_LINES]; /* the same at each line of the radiation      */
+	double texture;            /* March-Dollase factor, 1: random                 */
 	bool in_range;             /* the first line falls within the limits          */
 	bool target;
+	bool rate_known;           /* false: the phase has positions only             */
 	double two_theta_deg;      /* first line; 0 when out of reach                 */
 	double fwhm_deg;
 	double rate_cps_deg;       /* first line, one aperture, counts·deg/s          */
@@ -72,6 +74,7 @@ typedef struct {
 	const char *line;          /* "Ka", "Kb", "La", "Lb"                          */
 	double energy_keV;
 	const char *excited_by;    /* a line's name, or "continuum"                   */
+	double path_cm2_g;         /* μ/ρ in + μ/ρ out, for specimens that are thin   */
 	double rate_cps;           /* one aperture, thick specimen fully lit          */
 } bh_fluorescence;
 
@@ -80,8 +83,9 @@ typedef struct {
 	bh_setting setting;
 	bh_radiation radiation;
 	bh_composition mixture;    /* count 0: not known            */
-	double density_g_cm3;      /* X-ray density of the mixture  */
-	bool rates_known;          /* mixture known and flux > 0    */
+	double density_g_cm3;      /* X-ray density of the mixture; 0: not known */
+	double holder_attenuation_cm2_g[BH_MAX_LINES]; /* by line; 0: the holder gives no lines */
+	bool rates_known;          /* the mixture's composition is known */
 	double aperture_deg;       /* Δ                             */
 	double axial_frac;         /* h_eff/R                       */
 	bh_reflection *reflections; /* in range first, then the others; by phase, d falling */

@@ -1,0 +1,406 @@
+#include "physics/observe.h"
+
+#include <math.h>
+
+#include "base/units.h"
+#include "physics/absorb.h"
+#include "physics/background.h"
+#include "physics/bragg.h"
+#include "physics/detector.h"
+#include "physics/filter.h"
+#include "physics/geometry.h"
+#include "physics/radiation.h"
+#include "physics/reflect.h"
+#include "physics/structure.h"
+
+bh_setting bh_observe_usual(const bh_instrument *instrument, const bh_tube *tube)
+{
+	double ka_keV = bh_filter_ka_keV(tube->anode);
+
+	return (bh_setting){
+		.tube = tube,
+		.kV = tube->kV,
+		.mA = tube->mA,
+		.divergence_deg = instrument->automatic_length_mm > 0
+					  ? 0
+					  : instrument->usual_divergence_deg,
+		.window_low_keV = instrument->detector.window_low_frac * ka_keV,
+		.window_high_keV = instrument->detector.window_high_frac * ka_keV,
+	};
+}
+
+bh_lit bh_lit_at(const bh_request *request, const bh_setting *setting, double two_theta_deg)
+{
+	const bh_instrument *instrument = request->instrument;
+	const bh_specimen *specimen = &request->specimen;
+	double across = fmin(1, specimen->width_mm / instrument->beam_width_mm), share, beam = 1;
+
+	if (setting->divergence_deg > 0) {
+		share = bh_geometry_lit_frac(setting->divergence_deg, instrument->radius_mm,
+					     specimen->length_mm, two_theta_deg);
+	} else {
+		beam = sin(bh_rad(two_theta_deg / 2));
+		share = fmin(1, specimen->length_mm / instrument->automatic_length_mm);
+	}
+	return (bh_lit){ beam * share * across, beam * (1 - share * across) };
+}
+
+double bh_observe_areal_g_cm2(const bh_request *request, double density_g_cm3)
+{
+	return density_g_cm3 > 0 ? request->specimen.packing_frac * density_g_cm3 *
+					   request->specimen.thickness_mm * BH_CM_PER_MM
+				 : HUGE_VAL;
+}
+
+/* Composition and X-ray density of the whole specimen. An amorphous part without formula has
+ * the crystalline mixture's composition; its density counts as the crystalline one's. */
+static bool mix(bh_signal *signal, bh_arena *arena, const bh_scene *scene, bh_err *err)
+{
+	const bh_request *request = scene->request;
+	bh_mix_part *parts = bh_new(arena, bh_mix_part, request->phase_count + 1);
+	double volume = 0, share = 0;
+	size_t n = 0;
+
+	if (!parts)
+		return bh_fail_memory(err);
+	for (size_t i = 0; i < request->phase_count; i++) {
+		const bh_phase *phase = &request->phases[i];
+
+		if (!(phase->share_frac > 0))
+			continue;
+		if (phase->composition.count == 0 || !(phase->density_g_cm3 > 0))
+			return true; /* not known: count stays 0 */
+		parts[n++] = (bh_mix_part){ &phase->composition, phase->share_frac };
+		volume += phase->share_frac / phase->density_g_cm3;
+		share += phase->share_frac;
+	}
+	if (request->amorphous_frac > 0 && request->amorphous.count > 0)
+		parts[n++] = (bh_mix_part){ &request->amorphous, request->amorphous_frac };
+	if (n == 0 || !(volume > 0))
+		return true;
+	signal->density_g_cm3 = share / volume;
+	signal->rates_known = true;
+	return bh_absorb_mix(&signal->mixture, arena, parts, n, err);
+}
+
+static size_t add_sites(bh_scatterer *scatterers, size_t n, const bh_phase *phase,
+			double share_frac)
+{
+	double mass = 0;
+
+	for (size_t i = 0; i < phase->site_count; i++)
+		mass += phase->sites[i].multiplicity * phase->sites[i].occupancy *
+			bh_xray_molar_mass_g(phase->sites[i].z);
+	for (size_t i = 0; mass > 0 && i < phase->site_count; i++) {
+		const bh_site *site = &phase->sites[i];
+
+		scatterers[n++] = (bh_scatterer){
+			site->z,
+			share_frac * site->multiplicity * site->occupancy *
+				bh_xray_molar_mass_g(site->z) / mass,
+			site->b_iso_A2, false
+		};
+	}
+	return n;
+}
+
+static size_t add_elements(bh_scatterer *scatterers, size_t n, const bh_composition *c,
+			   double share_frac, bool amorphous)
+{
+	for (size_t i = 0; i < c->count; i++)
+		scatterers[n++] = (bh_scatterer){ c->elements[i].z,
+						  share_frac * c->elements[i].mass_frac,
+						  BH_B_ISO_DEFAULT_A2, amorphous };
+	return n;
+}
+
+static bool specimen_body(bh_body *body, bh_arena *arena, const bh_scene *scene,
+			  const bh_signal *signal, bh_err *err)
+{
+	const bh_request *request = scene->request;
+	const bh_composition *amorphous = request->amorphous.count ? &request->amorphous
+								   : &signal->mixture;
+	size_t most = amorphous->count, n = 0;
+	bh_scatterer *scatterers;
+
+	for (size_t i = 0; i < request->phase_count; i++)
+		most += request->phases[i].site_count + request->phases[i].composition.count;
+	scatterers = bh_new(arena, bh_scatterer, most);
+	if (!scatterers)
+		return bh_fail_memory(err);
+	for (size_t i = 0; i < request->phase_count; i++) {
+		const bh_phase *phase = &request->phases[i];
+
+		if (!(phase->share_frac > 0))
+			continue;
+		n = phase->site_count
+			    ? add_sites(scatterers, n, phase, phase->share_frac)
+			    : add_elements(scatterers, n, &phase->composition,
+					   phase->share_frac, false);
+	}
+	if (request->amorphous_frac > 0)
+		n = add_elements(scatterers, n, amorphous, request->amorphous_frac, true);
+	*body = (bh_body){ &signal->mixture, scatterers, n,
+			   bh_observe_areal_g_cm2(request, signal->density_g_cm3) };
+	return true;
+}
+
+static bool holder_body(bh_body *body, bh_arena *arena, const bh_phase *holder, bh_err *err)
+{
+	bh_scatterer *scatterers = bh_new(arena, bh_scatterer, holder->site_count);
+
+	if (!scatterers)
+		return bh_fail_memory(err);
+	*body = (bh_body){ &holder->composition, scatterers,
+			   add_sites(scatterers, 0, holder, 1), HUGE_VAL };
+	return true;
+}
+
+typedef struct {
+	bh_signal *signal;
+	const bh_scene *scene;
+	const bh_continuum *continuum;
+	double omega_sr;
+} view;
+
+/* Compton and diffuse scattering of one energy into the detector, thick body. */
+static void scatter(double *compton_cps, double *diffuse_cps, const view *v,
+		    const bh_body *body, double energy_keV, double flux_s, double counted_frac,
+		    double theta2_rad)
+{
+	const bh_signal *signal = v->signal;
+	double out_keV = bh_xray_compton_keV(energy_keV, theta2_rad);
+	double mu = bh_absorb_cm2_g(body->composition, energy_keV);
+	double thick = -expm1(-2 * mu * body->areal_g_cm2 / sin(theta2_rad / 2));
+
+	*compton_cps += thick *
+			bh_background_compton_cps(body->composition, energy_keV, flux_s,
+						  v->omega_sr, theta2_rad) *
+			bh_detector_counted_frac(v->scene->instrument, &signal->setting, out_keV);
+	*diffuse_cps += thick * counted_frac *
+			bh_background_diffuse_cps(body, energy_keV, flux_s, v->omega_sr,
+						  theta2_rad, signal->radiation.polarization);
+}
+
+/* The continuum, Compton and diffuse, for the energies that the detector counts: four bins
+ * at a time, for both vary slowly with energy. */
+static double continuum_scatter_cps(const view *v, const bh_body *body, double theta2_rad)
+{
+	enum { STRIDE = 4 };
+	const bh_continuum *c = v->continuum;
+	double compton_cps = 0, diffuse_cps = 0;
+
+	for (size_t i = 0; i + STRIDE <= c->count; i += STRIDE) {
+		double flux_s = 0, counted_s = 0, energy_keV;
+
+		for (size_t k = i; k < i + STRIDE; k++) {
+			flux_s += c->flux_s_keV[k] * c->step_keV;
+			counted_s += c->flux_s_keV[k] * c->step_keV * c->counted_frac[k];
+		}
+		energy_keV = c->low_keV + ((double)i + STRIDE / 2.0) * c->step_keV;
+		if (counted_s > 0 && c->counted_frac[i + STRIDE / 2] > 1e-4)
+			scatter(&compton_cps, &diffuse_cps, v, body, energy_keV, flux_s,
+				counted_s / flux_s, theta2_rad);
+	}
+	return compton_cps + diffuse_cps;
+}
+
+/* Continuum photons that the crystals reflect to this angle: each plane picks its own energy
+ * hc/(2 d sinθ); dE/d2θ = E cotθ/2. |F|² is taken at the first line. */
+static double continuum_bragg_cps(const view *v, double two_theta_deg)
+{
+	const bh_continuum *c = v->continuum;
+	const bh_signal *signal = v->signal;
+	bh_lit lit = bh_lit_at(v->scene->request, &signal->setting, two_theta_deg);
+	double sum = 0, theta = bh_rad(two_theta_deg / 2);
+
+	for (size_t i = 0; i < signal->reflection_count; i++) {
+		const bh_reflection *r = &signal->reflections[i];
+		const bh_phase *phase = &v->scene->phases[r->phase];
+		double wavelength_A = 2 * r->d_A * sin(theta);
+		double energy_keV = bh_energy_keV(wavelength_A);
+		size_t bin = bh_continuum_bin(c, energy_keV);
+		bool holder = v->scene->has_holder && r->phase + 1 == v->scene->phase_count;
+
+		if (!r->rate_known || holder || bin >= c->count ||
+		    !(c->counted_frac[bin] > 1e-4) || !(c->flux_s_keV[bin] > 0))
+			continue;
+		sum += phase->share_frac * c->flux_s_keV[bin] * c->counted_frac[bin] *
+		       energy_keV / tan(theta) / 2 *
+		       bh_reflect_per_photon(signal, bh_reflect_strength(r, phase, 0),
+					     wavelength_A, two_theta_deg,
+					     c->attenuation_cm2_g[bin]);
+	}
+	return sum * lit.specimen_frac;
+}
+
+static double fluorescence_cps(const bh_fluorescence *rows, size_t count, double areal_g_cm2,
+			       double two_theta_deg)
+{
+	double sum = 0, s = sin(bh_rad(two_theta_deg / 2));
+
+	for (size_t i = 0; i < count; i++)
+		sum += rows[i].rate_cps * -expm1(-rows[i].path_cm2_g * areal_g_cm2 / s);
+	return sum;
+}
+
+static void add_body(bh_background *b, const view *v, const bh_body *body, double lit_frac,
+		     const bh_fluorescence *rows, size_t row_count)
+{
+	double theta2_rad = bh_rad(b->two_theta_deg), compton_cps = 0, diffuse_cps = 0;
+
+	if (!(lit_frac > 0))
+		return;
+	for (size_t k = 0; k < v->signal->radiation.count; k++) {
+		const bh_line *line = &v->signal->radiation.lines[k];
+
+		scatter(&compton_cps, &diffuse_cps, v, body, line->energy_keV, line->flux_s,
+			line->detected_frac, theta2_rad);
+	}
+	b->compton += compton_cps * lit_frac;
+	b->diffuse += diffuse_cps * lit_frac;
+	b->fluorescence += lit_frac * fluorescence_cps(rows, row_count, body->areal_g_cm2,
+						       b->two_theta_deg);
+}
+
+enum { COARSE = 24 }; /* angles of the smooth part of the continuum */
+
+static void add_continuum(bh_signal *signal, const view *v, const bh_body *body)
+{
+	double coarse[COARSE + 1], low = signal->background[0].two_theta_deg;
+	double high = signal->background[signal->background_count - 1].two_theta_deg;
+	double step = (high - low) / COARSE;
+
+	for (int i = 0; i <= COARSE; i++)
+		coarse[i] = continuum_scatter_cps(v, body, bh_rad(low + i * step));
+	for (size_t i = 0; i < signal->background_count; i++) {
+		bh_background *b = &signal->background[i];
+		double at = step > 0 ? (b->two_theta_deg - low) / step : 0;
+		int k = at < COARSE - 1 ? (int)at : COARSE - 1;
+		bh_lit lit = bh_lit_at(v->scene->request, &signal->setting, b->two_theta_deg);
+
+		b->continuum = (coarse[k] + (coarse[k + 1] - coarse[k]) * (at - k)) *
+				       lit.specimen_frac +
+			       continuum_bragg_cps(v, b->two_theta_deg);
+	}
+}
+
+static bool blank_grid(bh_signal *signal, bh_arena *arena, const bh_scene *scene, bh_err *err)
+{
+	static const double step_deg = 0.5; /* every part varies slowly on this scale */
+	double low = scene->instrument->two_theta_min_deg;
+	double high = scene->instrument->two_theta_max_deg;
+	size_t steps = (size_t)ceil((high - low) / step_deg - 1e-9);
+
+	signal->background = bh_new(arena, bh_background, steps + 1);
+	if (!signal->background)
+		return bh_fail_memory(err);
+	signal->background_count = steps + 1;
+	for (size_t i = 0; i <= steps; i++) {
+		bh_background *b = &signal->background[i];
+
+		b->two_theta_deg = low + (high - low) * (double)i / (double)steps;
+		b->blank = bh_background_blank_cps(scene->instrument, &signal->setting,
+						   b->two_theta_deg);
+	}
+	return true;
+}
+
+/* The holder lights up where the beam spills beside the specimen. Its fluorescence stands in
+ * the background, not in the table of the specimen's own. */
+static bool add_holder(bh_signal *signal, bh_arena *arena, const bh_scene *scene,
+		       const view *v, bh_err *err)
+{
+	const bh_phase *holder = &scene->phases[scene->phase_count - 1];
+	bh_continuum continuum;
+	bh_fluorescence *rows;
+	size_t row_count;
+	bh_body body;
+
+	if (!holder_body(&body, arena, holder, err) ||
+	    !bh_continuum_make(&continuum, arena, scene->instrument, &signal->setting,
+			       &holder->composition, err) ||
+	    !bh_background_fluorescence(&rows, &row_count, arena, &body, scene->instrument,
+					&signal->setting, &signal->radiation, &continuum, err))
+		return false;
+	for (size_t i = 0; i < signal->background_count; i++) {
+		bh_background *b = &signal->background[i];
+
+		add_body(b, v, &body,
+			 bh_lit_at(scene->request, &signal->setting, b->two_theta_deg).holder_frac,
+			 rows, row_count);
+	}
+	return true;
+}
+
+static bool background(bh_signal *signal, bh_arena *arena, const bh_scene *scene,
+		       const bh_continuum *continuum, bh_err *err)
+{
+	view v = { signal, scene, continuum,
+		   bh_rad(signal->aperture_deg) * signal->axial_frac };
+	bh_body body;
+
+	if (!blank_grid(signal, arena, scene, err))
+		return false;
+	if (signal->rates_known) {
+		if (!specimen_body(&body, arena, scene, signal, err) ||
+		    !bh_background_fluorescence(&signal->fluorescence,
+						&signal->fluorescence_count, arena, &body,
+						scene->instrument, &signal->setting,
+						&signal->radiation, continuum, err))
+			return false;
+		for (size_t i = 0; i < signal->background_count; i++)
+			add_body(&signal->background[i], &v, &body,
+				 bh_lit_at(scene->request, &signal->setting,
+					   signal->background[i].two_theta_deg).specimen_frac,
+				 signal->fluorescence, signal->fluorescence_count);
+		add_continuum(signal, &v, &body);
+		if (scene->has_holder && !add_holder(signal, arena, scene, &v, err))
+			return false;
+	}
+	for (size_t i = 0; i < signal->background_count; i++) {
+		bh_background *b = &signal->background[i];
+
+		b->total = b->blank + b->fluorescence + b->continuum + b->compton + b->diffuse;
+	}
+	return true;
+}
+
+bool bh_observe(bh_signal *signal, bh_arena *arena, const bh_scene *scene,
+		const bh_setting *setting, bh_err *err)
+{
+	bh_continuum continuum;
+
+	*signal = (bh_signal){
+		.setting = *setting,
+		.aperture_deg = bh_deg(bh_detector_aperture_rad(scene->instrument)),
+		.axial_frac = bh_detector_axial_frac(scene->instrument),
+	};
+	if (!mix(signal, arena, scene, err))
+		return false;
+	bh_radiation_make(&signal->radiation, scene->instrument, setting, &signal->mixture);
+	for (size_t k = 0; scene->has_holder && k < signal->radiation.count; k++)
+		signal->holder_attenuation_cm2_g[k] =
+			bh_absorb_cm2_g(&scene->phases[scene->phase_count - 1].composition,
+					signal->radiation.lines[k].energy_keV);
+	return bh_reflect(signal, arena, scene, err) &&
+	       bh_continuum_make(&continuum, arena, scene->instrument, setting,
+				 &signal->mixture, err) &&
+	       background(signal, arena, scene, &continuum, err);
+}
+
+double bh_observe_background_cps(const bh_signal *signal, double two_theta_deg)
+{
+	const bh_background *b = signal->background;
+	size_t n = signal->background_count;
+	double step = (b[n - 1].two_theta_deg - b[0].two_theta_deg) / (double)(n - 1);
+	double at = (two_theta_deg - b[0].two_theta_deg) / step;
+	size_t i;
+
+	if (!(at > 0))
+		return b[0].total;
+	if (at >= (double)(n - 1))
+		return b[n - 1].total;
+	i = (size_t)at;
+	return b[i].total + (b[i + 1].total - b[i].total) * (at - (double)i);
+}
