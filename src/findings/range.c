@@ -1,0 +1,114 @@
+#include "findings/findings.h"
+
+#include <math.h>
+#include <stdint.h>
+
+#include "physics/bragg.h"
+#include "physics/detector.h"
+
+/* The offered anodes whose Kα1 brings a distance within the limits. */
+static const char *anodes_for(bh_findings *findings, double d_A)
+{
+	const bh_request *request = findings->plan->request;
+	const bh_tube *used = findings->plan->signal.setting.tube;
+	const char *list = "";
+
+	for (size_t i = 0; i < request->anode_count && list; i++) {
+		double at_deg;
+
+		if (request->anodes[i] != used->anode &&
+		    bh_bragg_two_theta_deg(&at_deg, d_A, request->anodes[i]->ka1_A) &&
+		    at_deg >= request->two_theta_min_deg && at_deg <= request->two_theta_max_deg)
+			list = bh_say(findings, "%s%s%s (%.2f°)", list, *list ? ", " : "",
+				      request->anodes[i]->symbol, at_deg);
+	}
+	return list;
+}
+
+static bool out_of_reach(bh_findings *findings, const bh_target_result *t)
+{
+	const bh_plan *plan = findings->plan;
+	const bh_request *request = plan->request;
+	const bh_anode *anode = plan->signal.setting.tube->anode;
+	double d_A = plan->phases[t->phase].targets[t->target].d_A, at_deg = 0;
+	bool somewhere = bh_bragg_two_theta_deg(&at_deg, d_A, anode->ka1_A);
+	const char *others = anodes_for(findings, d_A);
+	const char *name = bh_findings_target(findings, t);
+
+	if (!others || !name)
+		return bh_fail_memory(findings->err);
+	return bh_findings_add(
+		findings,
+		&(bh_finding){
+			.severity = bh_findings_wanted(plan, t) ? BH_SEVERE : BH_CAUTION,
+			.where = name,
+			.text = somewhere
+					? bh_say(findings,
+						 "d = %.4f Å reflects %s Kα1 at %.2f°, outside %.4g to "
+						 "%.4g°.",
+						 d_A, anode->symbol, at_deg,
+						 request->two_theta_min_deg,
+						 request->two_theta_max_deg)
+					: bh_say(findings,
+						 "d = %.4f Å is less than half of %s Kα1 (%.4f Å): no "
+						 "angle reflects it.",
+						 d_A, anode->symbol, anode->ka1_A),
+			.evidence = { { "d", d_A, "Å" },
+				      { "two_theta", somewhere ? at_deg : NAN, "°" },
+				      { "lowest", request->two_theta_min_deg, "°" },
+				      { "highest", request->two_theta_max_deg, "°" } },
+			.evidence_count = 4,
+			.remedy = *others ? bh_say(findings, "In range with %s.", others)
+					  : "No anode on offer brings it in: ask for another plane "
+					    "of this phase.",
+		});
+}
+
+/* A strip exposes fully only half its window inside the arms' limits. */
+static bool cut(bh_findings *findings, const bh_target_result *t)
+{
+	const bh_plan *plan = findings->plan;
+	const bh_instrument *instrument = plan->instrument;
+	double half_deg = instrument->detector.kind == BH_DETECTOR_STRIP
+				  ? bh_detector_window_deg(instrument) / 2
+				  : 0;
+	double low = fmax(instrument->two_theta_min_deg + half_deg,
+			  plan->request->two_theta_min_deg);
+	double high = fmin(instrument->two_theta_max_deg - half_deg,
+			   plan->request->two_theta_max_deg);
+	double width = fmax(4 * t->fwhm_deg, 0.4);
+	double last = t->ka2_deg > 0 ? t->ka2_deg : t->ka1_deg;
+
+	if (t->ka1_deg - width >= low && last + width <= high)
+		return true;
+	return bh_findings_add(
+		findings,
+		&(bh_finding){
+			.severity = BH_CAUTION,
+			.where = bh_findings_target(findings, t),
+			.text = bh_say(findings,
+				       "Its window %.2f to %.2f° runs beyond %.2f to %.2f°, where "
+				       "every point can be exposed fully: one side has little or no "
+				       "background.",
+				       t->ka1_deg - width, last + width, low, high),
+			.evidence = { { "two_theta", t->ka1_deg, "°" },
+				      { "lowest_full", low, "°" },
+				      { "highest_full", high, "°" } },
+			.evidence_count = 3,
+			.remedy = "Widen the limits if the machine allows, or measure another "
+				  "plane.",
+		});
+}
+
+bool bh_find_range(bh_findings *findings)
+{
+	const bh_plan *plan = findings->plan;
+
+	for (size_t i = 0; i < plan->target_count; i++) {
+		const bh_target_result *t = &plan->targets[i];
+
+		if (!(t->reflection == SIZE_MAX ? out_of_reach(findings, t) : cut(findings, t)))
+			return false;
+	}
+	return true;
+}
