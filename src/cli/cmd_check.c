@@ -1,0 +1,31 @@
+#include <stdio.h>
+
+#include "cli/commands.h"
+
+static void summary(const bh_request *request)
+{
+	printf("%s: good. %zu phase%s, %zu aim%s, instrument %s, anodes", request->file,
+	       request->phase_count, request->phase_count == 1 ? "" : "s", request->aim_count,
+	       request->aim_count == 1 ? "" : "s", request->instrument->name);
+	for (size_t i = 0; i < request->anode_count; i++)
+		printf(" %s", request->anodes[i]->symbol);
+	printf(", 2θ %.4g to %.4g°\n", request->two_theta_min_deg, request->two_theta_max_deg);
+}
+
+int bh_cmd_check(const bh_options *options)
+{
+	bh_err err = { BH_OK, 0, 0, "", "", "" };
+	bh_arena *arena = bh_arena_new();
+	bh_request *request;
+	int status;
+
+	if (!arena) {
+		bh_fail_memory(&err);
+		return bh_report(&err);
+	}
+	status = bh_open_request(&request, arena, options);
+	if (status == BH_EXIT_DONE && !options->quiet)
+		summary(request);
+	bh_arena_free(arena);
+	return status;
+}
