@@ -222,8 +222,15 @@ static void scattering(void **state)
 
 		s[0] = (bh_scatterer){ mix->elements[0].z, mix->elements[0].mass_frac, 0.4, false };
 		s[1] = (bh_scatterer){ mix->elements[1].z, mix->elements[1].mass_frac, 0.3, false };
-		assert_ratio(efficiency * bh_background_compton_cps(mix, keV, flux_s, omega, theta2),
+		/* the worked number takes μ/ρ of the incident energy both ways in and out */
+		assert_ratio(efficiency *
+				     bh_background_compton_cps(mix, keV, flux_s, omega, theta2) *
+				     (bh_absorb_cm2_g(mix, keV) +
+				      bh_absorb_cm2_g(mix, bh_xray_compton_keV(keV, theta2))) /
+				     (2 * bh_absorb_cm2_g(mix, keV)),
 			     rows[i].compton_cps, 2e-5, "Compton");
+		assert_ratio(bh_xray_compton_keV(keV, theta2),
+			     keV / (1 + (1 - cos(theta2)) * keV / 511.0), 1e-6, "Compton energy");
 		assert_ratio(efficiency *
 				     bh_background_diffuse_cps(&body, keV, flux_s, omega, theta2, 1),
 			     rows[i].diffuse_cps, 2e-5, "diffuse");

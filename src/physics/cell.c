@@ -1,0 +1,58 @@
+#include "physics/cell.h"
+
+#include <math.h>
+
+#include "base/units.h"
+
+/* Exact at 90° and 120°, where cos() leaves 6e-17. */
+static double cosine(double angle_deg)
+{
+	if (fabs(angle_deg - 90) < 1e-12)
+		return 0;
+	if (fabs(angle_deg - 120) < 1e-12)
+		return -0.5;
+	return cos(bh_rad(angle_deg));
+}
+
+bh_mat3 bh_cell_metric(const bh_cell *cell)
+{
+	double a = cell->a_A, b = cell->b_A, c = cell->c_A;
+	double bc = b * c * cosine(cell->alpha_deg), ac = a * c * cosine(cell->beta_deg);
+	double ab = a * b * cosine(cell->gamma_deg);
+
+	return (bh_mat3){ { { a * a, ab, ac }, { ab, b * b, bc }, { ac, bc, c * c } } };
+}
+
+bool bh_cell_reciprocal(bh_mat3 *reciprocal, const bh_cell *cell)
+{
+	bh_mat3 metric = bh_cell_metric(cell);
+
+	return bh_cell_volume_A3(cell) > 0 && bh_mat3_invert(reciprocal, &metric);
+}
+
+double bh_cell_volume_A3(const bh_cell *cell)
+{
+	bh_mat3 metric = bh_cell_metric(cell);
+	double square = bh_mat3_det(&metric);
+	double edges = cell->a_A * cell->b_A * cell->c_A;
+
+	return square > 1e-12 * edges * edges ? sqrt(square) : 0;
+}
+
+static double form(const bh_mat3 *m, const int h[3], const int k[3])
+{
+	double x[3] = { h[0], h[1], h[2] }, y[3] = { k[0], k[1], k[2] };
+
+	return bh_mat3_form(m, x, y);
+}
+
+double bh_cell_d_A(const bh_mat3 *reciprocal, const int h[3])
+{
+	return 1 / sqrt(form(reciprocal, h, h));
+}
+
+double bh_cell_cosine(const bh_mat3 *reciprocal, const int h[3], const int k[3])
+{
+	return form(reciprocal, h, k) /
+	       sqrt(form(reciprocal, h, h) * form(reciprocal, k, k));
+}
