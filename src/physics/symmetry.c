@@ -1,193 +1,87 @@
 #include "physics/symmetry.h"
 
-#include <ctype.h>
 #include <math.h>
 #include <stdio.h>
-#include <stdlib.h>
 #include <string.h>
 
 #include <spglib.h>
 
 #include "base/nearest.h"
 #include "physics/cell.h"
+#include "physics/symbol.h"
 
-enum { ROWS = 530, GROUPS = 230, LONGEST = 63 };
+enum { ROWS = 530, SHOWN = 60 };
 
-/* A symbol without blanks, tabs and underscores. */
-static void squeeze(char *to, size_t room, const char *from)
+/* Groups in centred cells beyond the table: a row with a primitive cell, and the letter of
+ * the lattice that is added to it. */
+static const struct {
+	const char *name;
+	int row;
+} centred[] = {
+	{ "A 1", 1 },	    { "B 1", 1 },	 { "C 1", 1 },	       { "F 1", 1 },
+	{ "I 1", 1 },	    { "A -1", 2 },	 { "B -1", 2 },	       { "C -1", 2 },
+	{ "F -1", 2 },	    { "I -1", 2 },	 { "C 1 1 2", 4 },     { "C 1 1 21", 7 },
+	{ "C 1 21 1", 6 },  { "I 1 21 1", 6 },	 { "F 1 2/m 1", 57 },  { "C 4 2 2", 366 },
+	{ "F 4 2 2", 366 }, { "C -4 2 m", 376 }, { "F 4/m m m", 400 },
+};
+
+enum { CENTRED = sizeof centred / sizeof *centred };
+
+static bh_symbol_row row_of(int row, SpglibSpacegroupType *type)
 {
-	size_t n = 0;
-
-	for (; *from && n + 1 < room; from++)
-		if (*from != ' ' && *from != '\t' && *from != '_')
-			to[n++] = *from;
-	to[n] = '\0';
+	*type = spg_get_spacegroup_type(row);
+	return (bh_symbol_row){ .row = row,
+				.number = type->number,
+				.choice = type->choice,
+				.hall = type->hall_symbol,
+				.international = type->international,
+				.full = type->international_full };
 }
 
-/* Hall symbols: case does not matter, blanks and underscores neither. */
-static bool same_hall(const char *text, const char *hall)
+/* The first of the rows that fit best, 0: none. Rows of a number stand together: unique axis
+ * b, cell choice 1, origin 1, hexagonal axes first. *fits_without: a row that the symbol fits
+ * but for its choice. */
+static int find_row(const bh_symbol *symbol, int *fits_without)
 {
-	char a[LONGEST + 1], b[LONGEST + 1];
+	int found = 0, best = 0;
 
-	squeeze(a, sizeof a, text);
-	squeeze(b, sizeof b, hall);
-	for (size_t i = 0;; i++) {
-		if (tolower((unsigned char)a[i]) != tolower((unsigned char)b[i]))
-			return false;
-		if (!a[i])
-			return true;
-	}
-}
+	*fits_without = 0;
+	for (int i = 1; i <= ROWS; i++) {
+		SpglibSpacegroupType type;
+		bh_symbol_row row = row_of(i, &type);
+		int fit = bh_symbol_fit(symbol, &row);
 
-/* What a user wrote, taken apart: the symbol without blanks, and the choice behind ":". */
-typedef struct {
-	char symbol[LONGEST + 1];
-	char choice[8];
-	bool explicit_choice;
-} wanted;
-
-static bool take_apart(wanted *w, const char *text)
-{
-	char squeezed[LONGEST + 1];
-	char *colon;
-
-	if (strlen(text) > LONGEST)
-		return false;
-	squeeze(squeezed, sizeof squeezed, text);
-	colon = strchr(squeezed, ':');
-	w->explicit_choice = colon != NULL;
-	w->choice[0] = '\0';
-	if (colon) {
-		*colon = '\0';
-		if (strlen(colon + 1) == 0 || strlen(colon + 1) >= sizeof w->choice)
-			return false;
-		memcpy(w->choice, colon + 1, strlen(colon + 1) + 1);
-		for (char *c = w->choice; *c; c++)
-			*c = (char)(*c == 'h' || *c == 'r' ? toupper((unsigned char)*c) : *c);
-	}
-	/* the letter of the lattice is a capital, the rest is not */
-	squeezed[0] = (char)toupper((unsigned char)squeezed[0]);
-	memcpy(w->symbol, squeezed, sizeof squeezed);
-	return w->symbol[0] != '\0';
-}
-
-/* "P n m a" or "C 2/c = C 1 2/c 1": each side of " = ". */
-static bool names_it(const char *symbol, const char *listed)
-{
-	char squeezed[LONGEST + 1], *equal;
-
-	squeeze(squeezed, sizeof squeezed, listed);
-	equal = strchr(squeezed, '=');
-	if (equal) {
-		*equal = '\0';
-		if (strcmp(symbol, equal + 1) == 0)
-			return true;
-	}
-	return strcmp(symbol, squeezed) == 0;
-}
-
-/* Cubic symbols of before 1992 leave the bar of the three-fold axis out: "F d 3 m". */
-static bool names_it_old(const char *symbol, const char *listed)
-{
-	char squeezed[LONGEST + 1], *bar;
-
-	squeeze(squeezed, sizeof squeezed, listed);
-	bar = strstr(squeezed, "-3");
-	if (!bar || bar < squeezed + 2)
-		return false;
-	memmove(bar, bar + 1, strlen(bar));
-	return strcmp(symbol, squeezed) == 0;
-}
-
-static bool in_row(const SpglibSpacegroupType *type, const char *symbol)
-{
-	return names_it(symbol, type->international) || names_it(symbol, type->international_full) ||
-	       names_it(symbol, type->international_short) ||
-	       (type->number >= 195 && (names_it_old(symbol, type->international) ||
-					names_it_old(symbol, type->international_full) ||
-					names_it_old(symbol, type->international_short)));
-}
-
-/* Whether a row's symbol spells this very setting: "P 1 21/n 1" does, the short symbol of the
- * type ("P 21/c" for all nine of number 14) does not. */
-static bool spells_setting(const SpglibSpacegroupType *type, const char *symbol)
-{
-	return names_it(symbol, type->international) || names_it(symbol, type->international_full);
-}
-
-static bool fits_choice(const SpglibSpacegroupType *type, const wanted *w)
-{
-	size_t n = strlen(type->choice), m = strlen(w->choice);
-
-	if (!w->explicit_choice)
-		return true;
-	if (strcmp(type->choice, w->choice) == 0)
-		return true;
-	/* "2" of an origin choice that the database writes with an axis: "2cab" */
-	if (n > m && m == 1 && isdigit((unsigned char)w->choice[0]) &&
-	    type->choice[0] == w->choice[0] && isalpha((unsigned char)type->choice[1]))
-		return true;
-	/* a group with one setting: ":1" says nothing wrong */
-	return n == 0 && strcmp(w->choice, "1") == 0;
-}
-
-static bool is_text_number(const char *text, int *number)
-{
-	char *end;
-	long value = strtol(text, &end, 10);
-
-	if (end == text || *end || value < 1 || value > GROUPS)
-		return false;
-	*number = (int)value;
-	return true;
-}
-
-/* The first row that a number, a symbol or a Hall symbol names, 0: none. Rows of a number
- * stand together, unique axis b, cell choice 1, origin 1, hexagonal axes first. */
-static int find_row(const wanted *w, const char *text)
-{
-	int by_symbol = 0, by_hall = 0, number = 0;
-	bool spelled = false;
-
-	is_text_number(w->symbol, &number);
-	for (int row = 1; row <= ROWS; row++) {
-		SpglibSpacegroupType type = spg_get_spacegroup_type(row);
-
-		if (!by_hall && same_hall(text, type.hall_symbol))
-			by_hall = row;
-		if (!fits_choice(&type, w))
-			continue;
-		if (number ? type.number == number : in_row(&type, w->symbol)) {
-			bool spells = !number && spells_setting(&type, w->symbol);
-
-			if (!by_symbol || (spells && !spelled)) {
-				by_symbol = row;
-				spelled = spells;
-			}
+		if (fit > 0 && !*fits_without)
+			*fits_without = i;
+		if (fit > best && bh_symbol_choice(symbol, &row)) {
+			found = i;
+			best = fit;
 		}
 	}
-	return by_symbol ? by_symbol : by_hall;
+	return found;
 }
 
-/* Groups with two origins: the same symbol stands in the table with choice 1 and 2. */
+static int find_centred(const bh_symbol *symbol)
+{
+	for (int i = 0; i < CENTRED && symbol->choice[0] == '\0'; i++) {
+		bh_symbol other;
+
+		if (bh_symbol_read(&other, centred[i].name) &&
+		    strcmp(other.squeezed, symbol->squeezed) == 0)
+			return i;
+	}
+	return CENTRED;
+}
+
+/* Whether a row is origin 1 of a group that has an origin 2. */
 static bool two_origins(int row)
 {
-	SpglibSpacegroupType type = spg_get_spacegroup_type(row);
-
-	for (int other = 1; other <= ROWS; other++) {
-		SpglibSpacegroupType t = spg_get_spacegroup_type(other);
-
-		if (other != row && t.number == type.number &&
-		    strcmp(t.international, type.international) == 0 &&
-		    type.choice[0] == '1' && t.choice[0] == '2')
-			return true;
-	}
-	return false;
+	return spg_get_spacegroup_type(row).choice[0] == '1';
 }
 
 typedef struct {
 	size_t distance;
-	char name[LONGEST + 1];
+	char name[BH_SYMBOL_ROOM];
 } candidate;
 
 /* Keep the nearest three names, each once. */
@@ -208,32 +102,55 @@ static void offer(candidate best[3], const char *name, size_t distance)
 		}
 }
 
-static bool unknown(const char *text, bh_err *err)
+/* Choices that a group offers, as ":1, :2". */
+static void write_choices(char *to, size_t room, int number)
 {
-	candidate best[3] = { { 99, "" }, { 99, "" }, { 99, "" } };
-	char symbol[LONGEST + 1], squeezed[LONGEST + 1];
+	size_t n = 0;
 
-	squeeze(symbol, sizeof symbol, text);
-	symbol[strcspn(symbol, ":")] = '\0';
+	to[0] = '\0';
 	for (int row = 1; row <= ROWS; row++) {
 		SpglibSpacegroupType type = spg_get_spacegroup_type(row);
-		char name[LONGEST + 1];
 
-		snprintf(name, sizeof name, "%.*s", (int)strcspn(type.international, "="),
-			 type.international);
-		for (char *c = name; *c; c++)
-			if (*c == '_')
-				memmove(c, c + 1, strlen(c));
-		while (*name && name[strlen(name) - 1] == ' ')
-			name[strlen(name) - 1] = '\0';
-		squeeze(squeezed, sizeof squeezed, name);
-		offer(best, name, bh_nearest_distance(symbol, squeezed));
+		if (type.number == number && type.choice[0] && n + 12 < room)
+			n += (size_t)snprintf(to + n, room - n, "%s:%.6s", n ? ", " : "",
+					      type.choice);
+	}
+}
+
+static bool wrong_choice(const char *text, const bh_symbol *symbol, int row, bh_err *err)
+{
+	char choices[200];
+
+	write_choices(choices, sizeof choices, spg_get_spacegroup_type(row).number);
+	return bh_fail(
+		err, BH_BAD_INPUT, "space group \"%.*s\" has no choice \":%s\"\n%s%s",
+		SHOWN, text, symbol->choice,
+		choices[0] ? "it has " : "it has one setting: leave the choice out",
+		choices);
+}
+
+static bool unknown(const char *text, const char *squeezed, bh_err *err)
+{
+	candidate best[3] = { { 99, "" }, { 99, "" }, { 99, "" } };
+
+	for (int i = 1; i <= ROWS; i++) {
+		SpglibSpacegroupType type;
+		bh_symbol_row row = row_of(i, &type);
+		char name[BH_SYMBOL_ROOM];
+		bh_symbol other;
+
+		bh_symbol_write(name, sizeof name, &row);
+		name[strcspn(name, ":")] = '\0';
+		if (bh_symbol_read(&other, name))
+			offer(best, name, bh_nearest_distance(squeezed, other.squeezed));
 	}
 	return bh_fail(err, BH_BAD_INPUT,
-		       "unknown space group \"%s\"\nnearest: \"%s\", \"%s\", \"%s\"; allowed: a "
-		       "Hermann-Mauguin or Hall symbol, or a number 1 to 230, with :1 :2 :H :R where "
+		       "unknown space group \"%.*s\"\nnearest: \"%s\", \"%s\", \"%s\"; "
+		       "allowed: a "
+		       "Hermann-Mauguin or Hall symbol, or a number 1 to 230, with :1 :2 "
+		       ":H :R where "
 		       "there is a choice",
-		       text, best[0].name, best[1].name, best[2].name);
+		       SHOWN, text, best[0].name, best[1].name, best[2].name);
 }
 
 static bool centric(const bh_space_group *group)
@@ -243,27 +160,12 @@ static bool centric(const bh_space_group *group)
 
 		for (int j = 0; j < 3; j++)
 			for (int k = 0; k < 3; k++)
-				inverts = inverts && group->ops[i].rotation[j][k] == -(j == k);
+				inverts = inverts &&
+					  group->ops[i].rotation[j][k] == -(j == k);
 		if (inverts)
 			return true;
 	}
 	return false;
-}
-
-/* The database's symbol of a setting without underscores: "F d -3 m", "P 21/n". */
-static void write_symbol(char *to, size_t room, const SpglibSpacegroupType *type)
-{
-	size_t n = 0;
-
-	for (const char *s = type->international; *s && *s != '=' && n + 1 < room; s++)
-		if (*s != '_')
-			to[n++] = *s;
-	while (n && to[n - 1] == ' ')
-		n--;
-	to[n] = '\0';
-	if (strcmp(type->choice, "H") == 0 || strcmp(type->choice, "R") == 0 ||
-	    isdigit((unsigned char)type->choice[0]))
-		snprintf(to + n, room - n, ":%.6s", type->choice);
 }
 
 bool bh_symmetry_row(bh_space_group *group, bh_arena *arena, int hall_number, bh_err *err)
@@ -271,16 +173,19 @@ bool bh_symmetry_row(bh_space_group *group, bh_arena *arena, int hall_number, bh
 	int rotations[BH_MAX_IMAGES][3][3], count;
 	double shifts[BH_MAX_IMAGES][3];
 	SpglibSpacegroupType type;
+	bh_symbol_row row;
 
 	/* the database reads out of range without complaint */
 	if (hall_number < 1 || hall_number > ROWS)
-		return bh_fail(err, BH_BAD_INPUT, "no row %d of the space-group table\n1 to %d",
-			       hall_number, ROWS);
-	type = spg_get_spacegroup_type(hall_number);
+		return bh_fail(err, BH_BAD_INPUT,
+			       "no row %d of the space-group table\n1 to %d", hall_number,
+			       ROWS);
+	row = row_of(hall_number, &type);
 	count = spg_get_symmetry_from_database(rotations, shifts, hall_number);
-	*group = (bh_space_group){ .number = type.number, .hall_number = hall_number,
+	*group = (bh_space_group){ .number = type.number,
+				   .hall_number = hall_number,
 				   .op_count = (size_t)count };
-	write_symbol(group->symbol, sizeof group->symbol, &type);
+	bh_symbol_write(group->symbol, sizeof group->symbol, &row);
 	snprintf(group->hall, sizeof group->hall, "%s", type.hall_symbol);
 	snprintf(group->choice, sizeof group->choice, "%.7s", type.choice);
 	group->ops = bh_new(arena, bh_symop, group->op_count);
@@ -295,17 +200,74 @@ bool bh_symmetry_row(bh_space_group *group, bh_arena *arena, int hall_number, bh
 	return true;
 }
 
+/* The points of a lattice besides the corner: A B C one, I one, F three. */
+static size_t lattice_points(double points[3][3], char letter)
+{
+	static const double faces[3][3] = { { 0, .5, .5 }, { .5, 0, .5 }, { .5, .5, 0 } };
+
+	if (letter == 'F') {
+		memcpy(points, faces, sizeof faces);
+		return 3;
+	}
+	if (letter == 'I')
+		memcpy(points[0], (const double[3]){ .5, .5, .5 }, sizeof points[0]);
+	else
+		memcpy(points[0], faces[letter - 'A'], sizeof points[0]);
+	return 1;
+}
+
+static bool make_centred(bh_space_group *group, bh_arena *arena, int i, bh_err *err)
+{
+	double points[3][3];
+	char *lattice;
+	size_t more = lattice_points(points, centred[i].name[0]), n;
+
+	if (!bh_symmetry_row(group, arena, centred[i].row, err))
+		return false;
+	n = group->op_count;
+	group->ops = bh_grow(arena, group->ops, bh_symop, n, n * (more + 1));
+	if (!group->ops)
+		return bh_fail_memory(err);
+	for (size_t p = 0; p < more; p++)
+		for (size_t k = 0; k < n; k++) {
+			bh_symop *op = &group->ops[(p + 1) * n + k];
+
+			*op = group->ops[k];
+			for (int j = 0; j < 3; j++)
+				op->shift[j] = fmod(op->shift[j] + points[p][j], 1);
+		}
+	group->op_count = n * (more + 1);
+	group->hall_number = 0;
+	group->choice[0] = '\0';
+	snprintf(group->symbol, sizeof group->symbol, "%s", centred[i].name);
+	lattice = strchr(group->hall, 'P');
+	if (lattice)
+		*lattice = centred[i].name[0];
+	return true;
+}
+
 bool bh_symmetry_find(bh_space_group *group, bool *origin_open, bh_arena *arena,
 		      const char *text, bh_err *err)
 {
-	wanted w;
-	int row = take_apart(&w, text) ? find_row(&w, text) : 0;
+	bh_symbol symbol;
+	int row, near_miss, extra;
 
+	*origin_open = false;
+	if (!bh_symbol_read(&symbol, text))
+		return unknown(text, "", err);
+	row = find_row(&symbol, &near_miss);
+	extra = row ? CENTRED : find_centred(&symbol);
+	if (extra < CENTRED)
+		return make_centred(group, arena, extra, err);
+	if (!row && near_miss)
+		return wrong_choice(text, &symbol, near_miss, err);
 	if (!row)
-		return unknown(text, err);
-	*origin_open = !w.explicit_choice && two_origins(row) &&
-		       !same_hall(text, spg_get_spacegroup_type(row).hall_symbol);
-	return bh_symmetry_row(group, arena, row, err);
+		return unknown(text, symbol.squeezed, err);
+	if (!bh_symmetry_row(group, arena, row, err))
+		return false;
+	*origin_open = two_origins(row) && symbol.choice[0] == '\0' &&
+		       !bh_symbol_is_hall(&symbol, group->hall);
+	return true;
 }
 
 /* Rᵀ G R of one operation. */
@@ -317,7 +279,8 @@ static bh_mat3 turned(const bh_mat3 *metric, const bh_symop *op)
 		for (int j = 0; j < 3; j++)
 			for (int k = 0; k < 3; k++)
 				for (int l = 0; l < 3; l++)
-					out.at[i][j] += op->rotation[k][i] * metric->at[k][l] *
+					out.at[i][j] += op->rotation[k][i] *
+							metric->at[k][l] *
 							op->rotation[l][j];
 	return out;
 }
@@ -335,32 +298,109 @@ double bh_symmetry_misfit(const bh_space_group *group, const bh_cell *cell)
 				double scale = sqrt(metric.at[i][i] * metric.at[j][j]);
 
 				/* half: an edge that is off by 1 % makes its square off by 2 % */
-				worst = fmax(worst, fabs(other.at[i][j] - metric.at[i][j]) /
-							    scale / 2);
+				worst = fmax(worst,
+					     fabs(other.at[i][j] - metric.at[i][j]) /
+						     scale / 2);
 			}
 	}
 	return worst;
 }
 
+/* The metric that the operations leave of a given one: the mean of Rᵀ G R. */
+static bh_mat3 mean_metric(const bh_space_group *group, const bh_mat3 *metric)
+{
+	bh_mat3 mean = { { { 0 } } };
+
+	for (size_t n = 0; n < group->op_count; n++) {
+		bh_mat3 other = turned(metric, &group->ops[n]);
+
+		for (int i = 0; i < 3; i++)
+			for (int j = 0; j < 3; j++)
+				mean.at[i][j] += other.at[i][j] / (double)group->op_count;
+	}
+	return mean;
+}
+
+/* a b c and the cosines of α β γ of a metric. */
+static void cell_values(double values[6], const bh_mat3 *metric)
+{
+	for (int i = 0; i < 3; i++) {
+		int j = (i + 1) % 3, k = (i + 2) % 3;
+
+		values[i] = sqrt(metric->at[i][i]);
+		values[3 + i] =
+			metric->at[j][k] / sqrt(metric->at[j][j] * metric->at[k][k]);
+	}
+}
+
 unsigned bh_symmetry_free_cell(const bh_space_group *group)
 {
-	enum { A = 1, B = 2, C = 4, ALPHA = 8, BETA = 16, GAMMA = 32 };
-	int n = group->number;
+	/* two cells without any regularity, made to obey the group: a value that is the same
+	 * in both is fixed, one that equals an earlier one in both follows from it */
+	static const bh_mat3 wild[2] = {
+		{ { { 31.7, 3.1, -4.3 }, { 3.1, 47.9, 5.9 }, { -4.3, 5.9, 71.3 } } },
+		{ { { 83.9, -7.7, 2.3 }, { -7.7, 29.3, -6.1 }, { 2.3, -6.1, 53.1 } } },
+	};
+	double a[6], b[6];
+	unsigned free_bits = 0;
 
-	if (n <= 2)
-		return A | B | C | ALPHA | BETA | GAMMA;
-	if (n <= 15) {
-		char axis = group->choice[0] == '-' ? group->choice[1] : group->choice[0];
+	for (int n = 0; n < 2; n++) {
+		bh_mat3 mean = mean_metric(group, &wild[n]);
 
-		return A | B | C | (axis == 'a' ? ALPHA : axis == 'c' ? GAMMA : BETA);
+		cell_values(n ? b : a, &mean);
 	}
-	if (n <= 74)
-		return A | B | C;
-	if (n <= 142)
-		return A | C;
-	if (n <= 194)
-		return strcmp(group->choice, "R") == 0 ? A | ALPHA : A | C;
-	return A;
+	for (int i = 0; i < 6; i++) {
+		bool is_free = fabs(a[i] - b[i]) > 1e-9;
+
+		for (int j = i < 3 ? 0 : 3; j < i; j++)
+			is_free = is_free &&
+				  (fabs(a[i] - a[j]) > 1e-9 || fabs(b[i] - b[j]) > 1e-9);
+		free_bits |= is_free ? 1u << i : 0;
+	}
+	return free_bits;
+}
+
+/* Operation on a point, into [0, 1). */
+static void move(double to[3], const bh_symop *op, const double at[3])
+{
+	for (int j = 0; j < 3; j++) {
+		to[j] = op->rotation[j][0] * at[0] + op->rotation[j][1] * at[1] +
+			op->rotation[j][2] * at[2] + op->shift[j];
+		to[j] -= floor(to[j]);
+		if (to[j] >= 1) /* a tiny negative rounds up to 1 */
+			to[j] = 0;
+	}
+}
+
+/* The shortest way from a to b, modulo whole cells. */
+static void way(double away[3], const double a[3], const double b[3])
+{
+	for (int j = 0; j < 3; j++) {
+		away[j] = b[j] - a[j];
+		away[j] -= round(away[j]);
+	}
+}
+
+/* The special position that a point was meant to stand on: the mean of its images within
+ * reach, so that 0.3333 becomes 1/3. */
+static void settle(double exact[3], const bh_space_group *group, const bh_mat3 *metric,
+		   const double at[3], double within_A)
+{
+	double sum[3] = { 0 }, n = 0;
+
+	for (size_t i = 0; i < group->op_count; i++) {
+		double image[3], away[3];
+
+		move(image, &group->ops[i], at);
+		way(away, at, image);
+		if (bh_mat3_form(metric, away, away) >= within_A * within_A)
+			continue;
+		n++;
+		for (int j = 0; j < 3; j++)
+			sum[j] += away[j];
+	}
+	for (int j = 0; j < 3; j++)
+		exact[j] = at[j] + (n > 0 ? sum[j] / n : 0);
 }
 
 size_t bh_symmetry_orbit(const bh_space_group *group, const bh_cell *cell,
@@ -368,31 +408,23 @@ size_t bh_symmetry_orbit(const bh_space_group *group, const bh_cell *cell,
 			 double images[BH_MAX_IMAGES][3])
 {
 	bh_mat3 metric = bh_cell_metric(cell);
+	double exact[3];
 	size_t count = 0;
 
+	settle(exact, group, &metric, at, within_A);
 	for (size_t n = 0; n < group->op_count; n++) {
-		const bh_symop *op = &group->ops[n];
-		double x[3];
+		double image[3];
 		bool seen = false;
 
-		for (int j = 0; j < 3; j++) {
-			x[j] = op->rotation[j][0] * at[0] + op->rotation[j][1] * at[1] +
-			       op->rotation[j][2] * at[2] + op->shift[j];
-			x[j] -= floor(x[j]);
-			if (x[j] >= 1) /* a tiny negative rounds up to 1 */
-				x[j] = 0;
-		}
+		move(image, &group->ops[n], exact);
 		for (size_t i = 0; i < count && !seen; i++) {
 			double away[3];
 
-			for (int j = 0; j < 3; j++) {
-				away[j] = x[j] - images[i][j];
-				away[j] -= round(away[j]);
-			}
+			way(away, images[i], image);
 			seen = bh_mat3_form(&metric, away, away) < within_A * within_A;
 		}
 		if (!seen)
-			memcpy(images[count++], x, sizeof x);
+			memcpy(images[count++], image, sizeof image);
 	}
 	return count;
 }

@@ -1,0 +1,54 @@
+#ifndef READ_SCAN_H
+#define READ_SCAN_H
+
+#include <stdbool.h>
+#include <stddef.h>
+#include <stdio.h>
+
+#include "base/arena.h"
+#include "base/err.h"
+#include "base/text.h"
+
+enum { BH_FILE_MOST = 1 << 20, BH_LINE_MOST = 4096, BH_DEPTH_MOST = 4 };
+
+/* One value as written. */
+typedef struct {
+	const char *text;  /* inside the quotes, escapes not resolved (conf does that) */
+	bool quoted;
+	bh_place place;
+} bh_scan_value;
+
+typedef struct {
+	const char *name;
+	bh_place place;
+	bool list;          /* written in braces */
+	bh_scan_value *values;
+	size_t count;
+} bh_scan_key;
+
+/* A section, or the file itself (name ""). */
+typedef struct bh_scan_section {
+	const char *name, *title; /* title NULL: none written */
+	bh_place place, title_place;
+	size_t id;                /* counts all sections of the file */
+	bh_scan_key *keys;
+	size_t key_count, key_room;
+	struct bh_scan_section **sections;
+	size_t section_count, section_room;
+} bh_scan_section;
+
+/* Read a whole stream, at most BH_FILE_MOST bytes.
+ *   false  noted: unreadable (BH_BAD_SYSTEM) or too large */
+bool bh_scan_load(char **bytes, size_t *length, bh_arena *arena, const char *file,
+		  FILE *stream, bh_problems *problems);
+
+/* Take a file apart: every key, value and section with its place. What the parser behind it
+ * would take silently (an open brace, a stray NUL, ${...}, +=, include()) is a problem here.
+ *   given    file  borrowed, stands in every place
+ *   returns  *root; parser_text for the parser: comments blanked, lines kept, each title
+ *            replaced by the section's id
+ *   false    problems noted */
+bool bh_scan(bh_scan_section **root, bh_text *parser_text, bh_arena *arena, const char *file,
+	     const char *bytes, size_t length, bh_problems *problems);
+
+#endif
