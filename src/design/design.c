@@ -34,15 +34,15 @@ static const char *target_name(work *w, const bh_target_result *t)
 			       phase->targets[t->target].text);
 }
 
-static void grains_of(double grains[2], const work *w, const bh_target_result *t)
+static void grains_of(double grains[2], const work *w, size_t target)
 {
-	const bh_reflection *r = &w->plan->signal.reflections[t->reflection];
+	const bh_view_of_line *line = &w->lines[target];
 
 	for (int view = 0; view < 2; view++)
-		grains[view] = bh_grains_effective(&w->plan->signal, w->scene,
-						   &w->plan->phases[t->phase], r->multiplicity,
-						   r->two_theta_deg, (bh_view)view,
-						   w->plan->request->specimen.spin);
+		grains[view] = bh_grains_effective(
+			&w->plan->signal, w->scene, &w->plan->phases[w->plan->targets[target].phase],
+			line->multiplicity, line->ka1_deg, (bh_view)view,
+			w->plan->request->specimen.spin);
 }
 
 static void look_at_target(work *w, size_t index)
@@ -51,7 +51,7 @@ static void look_at_target(work *w, size_t index)
 	bh_view_of_line *line = &w->lines[index];
 	const bh_signal *signal = &w->plan->signal;
 	const bh_phase *phase = &w->plan->phases[t->phase];
-	double grains[2];
+	double grains[2], density;
 
 	t->reflection = bh_view_find(signal, phase, t->phase, &phase->targets[t->target]);
 	if (t->reflection == SIZE_MAX || !signal->reflections[t->reflection].in_range) {
@@ -59,7 +59,7 @@ static void look_at_target(work *w, size_t index)
 		return;
 	}
 	bh_view_make(line, signal, w->scene, t->reflection);
-	grains_of(grains, w, t);
+	grains_of(grains, w, index);
 	t->rate_known = signal->reflections[t->reflection].rate_known;
 	t->ka1_deg = line->ka1_deg;
 	t->ka2_deg = line->ka2_deg > line->ka1_deg ? line->ka2_deg : 0;
@@ -68,7 +68,9 @@ static void look_at_target(work *w, size_t index)
 	t->top_cps = line->top_cps;
 	t->background_cps = line->background_cps;
 	t->purity_frac = line->purity_frac;
-	t->overlap_price = line->area_cps_deg > 0 ? bh_view_price(line, 1) : 0;
+	/* until the plan's exposure is known: at that of an area to 3 % */
+	density = bh_view_density(line, 0.03 * 0.03, BH_FIT_AREA);
+	t->overlap_price = isfinite(density) ? bh_view_price(line, density) : 0;
 	t->grains = grains[BH_VIEW_STILL];
 	for (size_t i = 0; i < line->neighbour_count; i++)
 		if (line->neighbours[i].separation_fwhm < 0.5 &&
@@ -156,7 +158,7 @@ static bool find_needs(work *w)
 		need->target = target_of(plan, need->aim);
 		if (need->target == SIZE_MAX || plan->targets[need->target].reflection == SIZE_MAX)
 			continue;
-		grains_of(grains, w, &plan->targets[need->target]);
+		grains_of(grains, w, need->target);
 		bh_need_line(need, &w->lines[need->target], grains, plan->instrument);
 	}
 	return true;
@@ -262,6 +264,24 @@ static double overhead_s(const work *w, const bh_range *ranges, size_t count)
 	return sum;
 }
 
+/* "0.5 s for each step of 0.02°", as it is typed at the machine. */
+static const char *how_run(work *w, const bh_range *range)
+{
+	bh_arena *arena = w->plan->arena;
+	const char *how;
+
+	if (range->mode == BH_MODE_MOVING)
+		how = bh_arena_format(arena, "moving at %.3g°/min, step %.3g°",
+				      60 * range->speed_deg_s, range->step_deg);
+	else if (range->mode == BH_MODE_STANDING)
+		how = bh_arena_format(arena, "standing for %.3g s, step %.3g°",
+				      range->time_per_step_s, range->step_deg);
+	else
+		how = bh_arena_format(arena, "%.3g s for each step of %.3g°",
+				      range->time_per_step_s, range->step_deg);
+	return how ? how : "";
+}
+
 /* A first quick scan over the best target whose counts settle the throughput: to 5 %, which
  * beats the factor that it replaces. */
 static bool scout(work *w)
@@ -271,7 +291,7 @@ static bool scout(work *w)
 	const bh_view_of_line *best = NULL;
 	bh_span span = { .purpose = "scout" };
 	bh_range range;
-	const char *name;
+	const char *name = NULL;
 	double counts;
 
 	if (tube->throughput_factor < 1.1)
@@ -292,11 +312,11 @@ static bool scout(work *w)
 	counts = best->area_cps_deg * best->inside_frac * range.exposure_s / range.step_deg;
 	plan->scout = bh_arena_format(
 		plan->arena,
-		"Scan %.1f to %.1f° (%s) at %.3g s/step of %.3g° first. The plan expects %.2g net "
-		"counts within %.2f to %.2f°. If you find k times as many, divide every count "
-		"time of the plan by k; below k = 0.5 or above 2, look for the cause first.",
-		range.from_deg, range.to_deg, name, range.time_per_step_s, range.step_deg, counts,
-		best->low_deg, best->high_deg);
+		"Scan %.1f to %.1f° (%s) first, %s. The plan expects %.0f net counts, summed over the "
+		"steps from %.2f to %.2f°. If you find k times as many, divide every count time of the "
+		"plan by k; below k = %.2g or above %.2g, look for the cause first.",
+		range.from_deg, range.to_deg, name, how_run(w, &range), bh_ranges_round_up(counts),
+		best->low_deg, best->high_deg, 1 / tube->throughput_factor, tube->throughput_factor);
 	return plan->scout || bh_fail_memory(w->err);
 }
 
@@ -363,12 +383,11 @@ static void result_line(work *w, bh_aim_result *result, const bh_need *need,
 			bh_fit_parameter parameter)
 {
 	bh_plan *plan = w->plan;
-	bh_target_result *t = &plan->targets[need->target];
 	const bh_view_of_line *line = &w->lines[need->target];
 	double unit = parameter == BH_FIT_AREA ? 100 : 1, grains[2], density;
 	bh_view view;
 
-	grains_of(grains, w, t);
+	grains_of(grains, w, need->target);
 	density = density_at(plan, line->low_deg, line->high_deg, &view);
 	result->computed = need->computed && density > 0;
 	result->reachable = need->reachable[view];
@@ -468,7 +487,7 @@ static bool results(work *w)
 
 		if (t->reflection == SIZE_MAX || !(line->area_cps_deg > 0))
 			continue;
-		grains_of(grains, w, t);
+		grains_of(grains, w, i);
 		density = density_at(plan, line->low_deg, line->high_deg, &view);
 		t->grains = grains[view];
 		t->grain_error_frac = t->grains > 0 ? 1 / sqrt(t->grains) : 0;

@@ -261,7 +261,10 @@ void bh_view_make(bh_view_of_line *view, const bh_signal *signal, const bh_scene
 		if (!is_own(view, signal, peak))
 			continue;
 		view->area_cps_deg += peak->rate_cps_deg;
-		view->equal_planes += signal->radiation.lines[peak->line].kind == BH_KA1;
+		if (signal->radiation.lines[peak->line].kind != BH_KA1)
+			continue;
+		view->equal_planes++;
+		view->multiplicity += signal->reflections[peak->reflection].multiplicity;
 	}
 	if (!(view->area_cps_deg > 0))
 		return;

@@ -36,6 +36,7 @@ typedef struct {
 	double top_cps;           /* highest point of the recorded peak, net        */
 	double purity_frac;       /* own share of the net counts in the line window */
 	size_t equal_planes;      /* planes of the same phase at the same d         */
+	int multiplicity;         /* of all of them, Friedel opposites counted      */
 	bh_neighbour neighbours[BH_VIEW_NEIGHBOURS];
 	size_t neighbour_count;   /* largest first                                  */
 	double information[BH_CHOLESKY_MOST * BH_CHOLESKY_MOST]; /* per s/deg       */

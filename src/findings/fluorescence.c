@@ -3,6 +3,7 @@
 #include <math.h>
 #include <string.h>
 
+#include "physics/bragg.h"
 #include "physics/xray.h"
 
 static const double least_of_background = 0.1; /* an element's share to be named      */
@@ -70,10 +71,18 @@ static bool gain_of(bh_findings *findings, const bh_target_result *t,
 		    const bh_setting *setting, double *gain)
 {
 	bh_plan *plan = findings->plan;
+	const bh_phase *phase = &plan->phases[t->phase];
+	bh_scene near = *findings->scene;
 	bh_signal other;
-	double now = bh_findings_cost(&plan->signal, findings->scene, t), then;
+	double now = bh_findings_cost(&plan->signal, findings->scene, t), then, at_deg;
 
-	if (!bh_observe(&other, plan->arena, findings->scene, setting, findings->err))
+	*gain = 0;
+	if (!bh_bragg_two_theta_deg(&at_deg, phase->targets[t->target].d_A,
+				    setting->tube->anode->ka1_A))
+		return true;
+	near.background_low_deg = fmax(at_deg - 2, 0.1);
+	near.background_high_deg = near.background_low_deg + 4;
+	if (!bh_observe(&other, plan->arena, &near, setting, findings->err))
 		return false;
 	then = bh_findings_cost(&other, findings->scene, t);
 	*gain = isfinite(then) && then > 0 && isfinite(now) ? now / then : 0;
@@ -166,16 +175,26 @@ static const char *listed(bh_findings *findings, const cure *cures, size_t count
 	return text;
 }
 
+/* "Cu Kα1" of a line's name. */
+static const char *exciter(bh_findings *findings, const char *name)
+{
+	static const char *const words[][2] = { { "Ka1", "Kα1" }, { "Ka2", "Kα2" }, { "Kb", "Kβ" } };
+	const char *anode = findings->plan->signal.setting.tube->anode->symbol;
+
+	if (strcmp(name, "continuum") == 0)
+		return "the tube's continuum";
+	for (size_t i = 0; i < sizeof words / sizeof *words; i++)
+		if (strcmp(name, words[i][0]) == 0)
+			return bh_say(findings, "%s %s", anode, words[i][1]);
+	return "tungsten Lα1";
+}
+
 static bool report(bh_findings *findings, const bh_target_result *t, emitter e)
 {
-	const bh_signal *signal = &findings->plan->signal;
 	cure cures[3] = { { "", 0 }, { "", 0 }, { "", 0 } };
 	double cost = cost_of(findings, t, e.rate_cps), gain = 0;
 	double at_target = e.rate_cps, peak_cps = t->top_cps;
-	const char *by_continuum = strcmp(e.by, "continuum") == 0
-					   ? "the tube's continuum"
-					   : bh_say(findings, "%s %s", signal->setting.tube->anode->symbol,
-						    e.by);
+	const char *by_continuum = exciter(findings, e.by);
 
 	if (!try_anodes(findings, t, &cures[0]) || !try_windows(findings, t, &cures[1]) ||
 	    !try_voltage(findings, t, e.z, &cures[2]))

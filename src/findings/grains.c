@@ -28,12 +28,12 @@ static const char *remedy(bh_findings *findings, const bh_target_result *t, doub
 {
 	const bh_plan *plan = findings->plan;
 	const bh_specimen *specimen = &plan->request->specimen;
-	const bh_reflection *r = &plan->signal.reflections[t->reflection];
 	const bh_phase *phase = &plan->phases[t->phase];
-	double still = bh_grains_effective(&plan->signal, findings->scene, phase, r->multiplicity,
-					   r->two_theta_deg, BH_VIEW_STILL, false);
-	double spun = bh_grains_effective(&plan->signal, findings->scene, phase, r->multiplicity,
-					  r->two_theta_deg, BH_VIEW_STILL, true);
+	/* the multiplicity falls out of the ratio */
+	double still = bh_grains_effective(&plan->signal, findings->scene, phase, 1, t->ka1_deg,
+					   BH_VIEW_STILL, false);
+	double spun = bh_grains_effective(&plan->signal, findings->scene, phase, 1, t->ka1_deg,
+					  BH_VIEW_STILL, true);
 	/* half the wanted error: the rest is left to counting */
 	double fine_um = specimen->grain_um * cbrt(t->grains * wanted * wanted / 4);
 

@@ -69,12 +69,15 @@ static bh_severity severity(const bh_findings *findings, const bh_target_result 
 	return n->in_window_frac > 0.1 || t->overlap_price > 2 ? BH_CAUTION : BH_NOTE;
 }
 
-static const char *others(bh_findings *findings, const bh_view_of_line *line)
+static const char *others(bh_findings *findings, const bh_view_of_line *line,
+			  const bh_neighbour *worst)
 {
 	const char *text = "";
+	int named = 0;
 
-	for (size_t i = 1; i < line->neighbour_count && i < 4 && text; i++)
-		if (line->neighbours[i].in_window_frac > least_share)
+	for (size_t i = 0; i < line->neighbour_count && text && named < 3; i++)
+		if (&line->neighbours[i] != worst &&
+		    line->neighbours[i].in_window_frac > least_share && ++named)
 			text = bh_say(findings, "%s%s%s%s %.1f %%", text, *text ? ", " : " Also ",
 				      bh_findings_plane(findings, line->neighbours[i].reflection),
 				      line_word(findings->plan, line->neighbours[i].line),
@@ -82,14 +85,29 @@ static const char *others(bh_findings *findings, const bh_view_of_line *line)
 	return text && *text ? bh_say(findings, "%s.", text) : text;
 }
 
+static bool asks_position(const bh_plan *plan, const bh_target_result *t)
+{
+	for (size_t i = 0; i < plan->request->aim_count; i++) {
+		const bh_aim *aim = &plan->request->aims[i];
+
+		if (aim->kind == BH_AIM_LINE && aim->phase == t->phase &&
+		    aim->target == t->target && aim->position_error_deg > 0)
+			return true;
+	}
+	return false;
+}
+
 static bool report(bh_findings *findings, const bh_target_result *t,
 		   const bh_view_of_line *line, const bh_neighbour *n)
 {
 	double limit = sqrt(bh_view_limit(line, BH_FIT_AREA)), gain;
 	double density = bh_view_density(line, 0.03 * 0.03, BH_FIT_AREA);
-	const char *better, *more = others(findings, line), *remedy;
+	const char *better, *more = others(findings, line, n), *remedy;
 
-	if (!better_plane(findings, t, density, &better, &gain))
+	better = NULL;
+	gain = 0;
+	if (!asks_position(findings->plan, t) && /* there that very plane is meant */
+	    !better_plane(findings, t, density, &better, &gain))
 		return false;
 	if (better && gain > 1.2)
 		remedy = bh_say(findings,

@@ -22,7 +22,7 @@ enum { BH_SYMBOL_ROOM = 48 };
 
 typedef struct {
 	int number;                     /* 1..230                                   */
-	int hall_number;                /* 1..530, row of the space-group database  */
+	int hall_number;                /* 1..530, row of the database; 0 beyond it  */
 	char symbol[BH_SYMBOL_ROOM];    /* Hermann-Mauguin of this setting          */
 	char hall[BH_SYMBOL_ROOM];      /* Hall symbol                              */
 	char choice[8];                 /* "1", "2", "H", "R", "b1", ...; "" if one */

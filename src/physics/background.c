@@ -123,7 +123,7 @@ static void drop_small(row_list *list)
 		if (list->rows[i].rate_cps > most)
 			most = list->rows[i].rate_cps;
 	for (size_t i = 0; i < list->count; i++)
-		if (list->rows[i].rate_cps > 1e-6 * most)
+		if (list->rows[i].rate_cps > 1e-6 * most && list->rows[i].rate_cps > 1e-9)
 			list->rows[kept++] = list->rows[i];
 	list->count = kept;
 }

@@ -43,7 +43,8 @@ static bool count_of(double *count, reader *r)
 		}
 	if (*s == '.') {
 		r->at = s;
-		return refuse(r, "a dot that is no decimal point (write a hydrate with *)");
+		return refuse(r,
+			      "a dot that is no decimal point (write a hydrate with *)");
 	}
 	r->at = s;
 	*count = whole + part;
@@ -66,7 +67,8 @@ static int symbol_at(reader *r)
 			r->at += 2;
 		return z;
 	}
-	z = strcmp(symbol, "D") == 0 ? 1 : bh_xray_z(symbol); /* deuterium: hydrogen here */
+	z = strcmp(symbol, "D") == 0 ? 1
+				     : bh_xray_z(symbol); /* deuterium: hydrogen here */
 	if (z)
 		r->at++;
 	return z;
@@ -95,6 +97,8 @@ static bool bracket(reader *r, double times, int depth)
 	r->at = inside;
 	if (!group(r, times * count, depth + 1))
 		return false;
+	if (*r->at == '*')
+		return refuse(r, "a hydrate's * inside a bracket");
 	r->at = end;
 	return true;
 }
@@ -177,8 +181,9 @@ bool bh_formula_read(bh_composition *composition, bh_arena *arena, const char *t
 		return bh_fail_memory(err);
 	for (int z = 1; z <= BH_Z_MAX; z++)
 		if (r.atoms[z] > 0)
-			elements[count++] = (bh_element_share){ z, r.atoms[z] *
-									   bh_xray_molar_mass_g(z) };
+			elements[count++] =
+				(bh_element_share){ z, r.atoms[z] *
+							       bh_xray_molar_mass_g(z) };
 	*composition = (bh_composition){ elements, count };
 	bh_formula_normalise(composition);
 	return true;

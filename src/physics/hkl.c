@@ -71,8 +71,10 @@ static int negatives(const int h[3])
 /* Whether a is printed rather than b. */
 static bool comes_first(const int a[3], const int b[3])
 {
-	if (negatives(a) != negatives(b))
-		return negatives(a) < negatives(b);
+	int more = negatives(a) - negatives(b);
+
+	if (more != 0)
+		return more < 0;
 	for (int j = 0; j < 3; j++)
 		if (a[j] != b[j])
 			return a[j] > b[j];
@@ -99,33 +101,89 @@ static int by_d(const void *a, const void *b)
 {
 	const bh_hkl *p = a, *q = b;
 
-	if (fabs(p->d_A - q->d_A) > 1e-9 * q->d_A)
-		return p->d_A > q->d_A ? -1 : 1;
+	return (p->d_A < q->d_A) - (p->d_A > q->d_A);
+}
+
+static int by_index(const void *a, const void *b)
+{
+	const bh_hkl *p = a, *q = b;
+
 	for (int j = 0; j < 3; j++)
 		if (p->h[j] != q->h[j])
 			return p->h[j] > q->h[j] ? -1 : 1;
 	return 0;
 }
 
+/* d falling; planes of one d, apart by rounding only, by their indices. */
+static void sort(bh_hkl *planes, size_t count)
+{
+	size_t from = 0;
+
+	if (count == 0)
+		return;
+	qsort(planes, count, sizeof *planes, by_d);
+	for (size_t i = 1; i <= count; i++)
+		if (i == count || planes[i].d_A < planes[from].d_A * (1 - 1e-9)) {
+			qsort(planes + from, i - from, sizeof *planes, by_index);
+			from = i;
+		}
+}
+
+/* A rotation and the planes it turns; rotations of a centred group stand there once. */
+typedef struct {
+	int by[3][3];
+} rotation;
+
 typedef struct {
 	bh_arena *arena;
 	const bh_space_group *group;
+	rotation rotations[BH_MAX_EQUIVALENTS];
+	size_t rotation_count;
 	bh_mat3 reciprocal;
 	double most_inv_A2;
 	bh_hkl *planes;
 	size_t count, capacity;
 } collection;
 
-static bool collect(collection *c, const int h[3])
+static void collect_rotations(collection *c)
 {
-	int equivalents[BH_MAX_EQUIVALENTS][3], standard[3];
-	double x[3] = { h[0], h[1], h[2] };
-	double inv_A2 = bh_mat3_form(&c->reciprocal, x, x);
+	for (size_t i = 0; i < c->group->op_count; i++) {
+		bool seen = false;
+
+		for (size_t k = 0; k < c->rotation_count && !seen; k++)
+			seen = memcmp(c->rotations[k].by, c->group->ops[i].rotation,
+				      sizeof c->rotations[k].by) == 0;
+		if (!seen && c->rotation_count < BH_MAX_EQUIVALENTS)
+			memcpy(c->rotations[c->rotation_count++].by,
+			       c->group->ops[i].rotation, sizeof c->rotations[0].by);
+	}
+}
+
+/* Whether h is the printed one of its equivalents: most planes fail at the first few. */
+static bool is_standard(const collection *c, const int h[3])
+{
+	for (size_t i = 0; i < c->rotation_count; i++) {
+		const rotation *r = &c->rotations[i];
+		int k[3], opposite[3];
+
+		for (int j = 0; j < 3; j++) {
+			k[j] = h[0] * r->by[0][j] + h[1] * r->by[1][j] +
+			       h[2] * r->by[2][j];
+			opposite[j] = -k[j];
+		}
+		if (comes_first(k, h) || comes_first(opposite, h))
+			return false;
+	}
+	return true;
+}
+
+static bool collect(collection *c, const int h[3], double inv_A2)
+{
+	int equivalents[BH_MAX_EQUIVALENTS][3];
 
 	if (!(inv_A2 > 0) || inv_A2 > c->most_inv_A2)
 		return true;
-	bh_hkl_standard(standard, c->group, h);
-	if (!same(standard, h) || bh_hkl_absent(c->group, h))
+	if (!is_standard(c, h) || bh_hkl_absent(c->group, h))
 		return true;
 	if (c->count == c->capacity) {
 		size_t more = c->capacity ? 2 * c->capacity : 64;
@@ -136,38 +194,61 @@ static bool collect(collection *c, const int h[3])
 		c->planes = grown;
 		c->capacity = more;
 	}
-	c->planes[c->count++] = (bh_hkl){
-		{ h[0], h[1], h[2] },
-		(int)bh_hkl_equivalents(c->group, h, equivalents),
-		1 / sqrt(inv_A2)
-	};
+	c->planes[c->count++] =
+		(bh_hkl){ { h[0], h[1], h[2] },
+			  (int)bh_hkl_equivalents(c->group, h, equivalents),
+			  1 / sqrt(inv_A2) };
+	return true;
+}
+
+/* All l of one h k inside the sphere: G33 l² + 2 (G13 h + G23 k) l + rest ≤ 1/d². */
+static bool collect_row(collection *c, int h, int k)
+{
+	const bh_mat3 *g = &c->reciprocal;
+	double half = (g->at[0][2] * h + g->at[1][2] * k) / g->at[2][2];
+	double rest = g->at[0][0] * h * h + 2 * g->at[0][1] * h * k + g->at[1][1] * k * k;
+	double root = half * half - (rest - c->most_inv_A2) / g->at[2][2];
+	int low, high;
+
+	if (root < 0)
+		return true;
+	/* one more at each end: collect() looks at d itself */
+	low = (int)ceil(-half - sqrt(root)) - 1;
+	high = (int)floor(-half + sqrt(root)) + 1;
+	for (int l = low; l <= high; l++) {
+		int plane[3] = { h, k, l };
+		double x[3] = { h, k, l };
+
+		/* the printed one of a Friedel pair has at most one negative index */
+		if (negatives(plane) <= 1 &&
+		    !collect(c, plane, bh_mat3_form(&c->reciprocal, x, x)))
+			return false;
+	}
 	return true;
 }
 
 bool bh_hkl_list(bh_hkl **planes, size_t *count, bh_arena *arena, const bh_cell *cell,
 		 const bh_space_group *group, double least_d_A, bh_err *err)
 {
-	collection c = { .arena = arena, .group = group,
+	collection c = { .arena = arena,
+			 .group = group,
 			 .most_inv_A2 = (1 + 1e-12) / (least_d_A * least_d_A) };
 	bh_mat3 metric = bh_cell_metric(cell);
-	int most[3], h[3];
+	int most_h, most_k;
 
 	*planes = NULL;
 	*count = 0;
 	if (!bh_cell_reciprocal(&c.reciprocal, cell))
 		return true;
+	collect_rotations(&c);
 	/* |h| ≤ a/d: the projection of the sphere on a direct axis */
-	for (int j = 0; j < 3; j++)
-		most[j] = (int)floor(sqrt(metric.at[j][j]) / least_d_A + 1e-9);
-	/* the printed plane of a Friedel pair has at most one negative index, or its first
-	 * non-zero index positive */
-	for (h[0] = -most[0]; h[0] <= most[0]; h[0]++)
-		for (h[1] = -most[1]; h[1] <= most[1]; h[1]++)
-			for (h[2] = -most[2]; h[2] <= most[2]; h[2]++)
-				if (negatives(h) <= 1 && !collect(&c, h))
-					return bh_fail_memory(err);
-	if (c.count)
-		qsort(c.planes, c.count, sizeof *c.planes, by_d);
+	most_h = (int)floor(sqrt(metric.at[0][0]) / least_d_A + 1e-9);
+	most_k = (int)floor(sqrt(metric.at[1][1]) / least_d_A + 1e-9);
+	for (int h = -most_h; h <= most_h; h++)
+		for (int k = h < 0 ? 0 : -most_k; k <= most_k; k++)
+			if (!collect_row(&c, h, k))
+				return bh_fail_memory(err);
+	sort(c.planes, c.count);
 	*planes = c.planes;
 	*count = c.count;
 	return true;
@@ -193,20 +274,32 @@ static bool next_index(int *index, const char **text, bool packed)
 	return true;
 }
 
+static bool is_separator(char c)
+{
+	return c == ' ' || c == ',' || c == '\t';
+}
+
+/* One word: indices without separators. */
+static bool is_packed(const char *text)
+{
+	size_t word = strcspn(text, " ,\t");
+
+	return text[word + strspn(text + word, " \t")] == '\0';
+}
+
 bool bh_hkl_parse(int h[3], const char *text)
 {
-	const char *s = text;
-	bool packed = strpbrk(text, " ,") == NULL;
+	const char *s = text + strspn(text, " \t");
+	bool packed = is_packed(s);
 	int index[4], n = 0;
 
-	while (*s) {
-		while (!packed && (*s == ' ' || *s == ','))
-			s++;
+	for (;;) {
+		s += strspn(s, packed ? " \t" : " ,\t");
 		if (!*s)
 			break;
 		if (n == 4 || !next_index(&index[n++], &s, packed))
 			return false;
-		if (!packed && *s && *s != ' ' && *s != ',')
+		if (!packed && *s && !is_separator(*s))
 			return false;
 	}
 	if (n == 4) {

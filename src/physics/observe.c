@@ -269,14 +269,15 @@ static void add_continuum(bh_signal *signal, const view *v, const bh_body *body)
 {
 	double coarse[COARSE + 1], low = signal->background[0].two_theta_deg;
 	double high = signal->background[signal->background_count - 1].two_theta_deg;
-	double step = (high - low) / COARSE;
+	int last = signal->background_count > 2 * COARSE ? COARSE : 1;
+	double step = (high - low) / last;
 
-	for (int i = 0; i <= COARSE; i++)
+	for (int i = 0; i <= last; i++)
 		coarse[i] = continuum_scatter_cps(v, body, bh_rad(low + i * step));
 	for (size_t i = 0; i < signal->background_count; i++) {
 		bh_background *b = &signal->background[i];
 		double at = step > 0 ? (b->two_theta_deg - low) / step : 0;
-		int k = at < COARSE - 1 ? (int)at : COARSE - 1;
+		int k = at < last - 1 ? (int)at : last - 1;
 		bh_lit lit = bh_lit_at(v->scene->request, &signal->setting, b->two_theta_deg);
 
 		b->continuum = (coarse[k] + (coarse[k + 1] - coarse[k]) * (at - k)) *
@@ -288,8 +289,9 @@ static void add_continuum(bh_signal *signal, const view *v, const bh_body *body)
 static bool blank_grid(bh_signal *signal, bh_arena *arena, const bh_scene *scene, bh_err *err)
 {
 	static const double step_deg = 0.5; /* every part varies slowly on this scale */
-	double low = scene->instrument->two_theta_min_deg;
-	double high = scene->instrument->two_theta_max_deg;
+	bool all = !(scene->background_high_deg > 0);
+	double low = all ? scene->instrument->two_theta_min_deg : scene->background_low_deg;
+	double high = all ? scene->instrument->two_theta_max_deg : scene->background_high_deg;
 	size_t steps = (size_t)ceil((high - low) / step_deg - 1e-9);
 
 	signal->background = bh_new(arena, bh_background, steps + 1);

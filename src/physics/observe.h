@@ -15,6 +15,9 @@ typedef struct {
 	const bh_phase *phases;
 	size_t phase_count;
 	bool has_holder;       /* the last phase is the holder */
+	/* Where the background is wanted; both 0: within the arms' reach. To compare settings
+	 * at one line only its neighbourhood is needed. */
+	double background_low_deg, background_high_deg;
 } bh_scene;
 
 /* Shares of the beam at an angle: on the specimen, beside it. An automatic slit's smaller

@@ -1,16 +1,15 @@
 #include "physics/rates.h"
 
-#include <math.h>
-
 #include "base/units.h"
 #include "physics/geometry.h"
 
 double bh_rates_integrated_cps_rad(const bh_rate_terms *terms)
 {
 	double lambda_cm = terms->wavelength_A * BH_CM_PER_A;
-	double inv_cm6 = terms->strength_inv_A6 / pow(BH_CM_PER_A, 6);
-	double crystal_inv_cm = BH_ELECTRON_RADIUS_CM * BH_ELECTRON_RADIUS_CM *
-				pow(lambda_cm, 3) * inv_cm6;
+	double cm3_per_A3 = BH_CM_PER_A * BH_CM_PER_A * BH_CM_PER_A;
+	double inv_cm6 = terms->strength_inv_A6 / (cm3_per_A3 * cm3_per_A3);
+	double crystal_inv_cm = BH_ELECTRON_RADIUS_CM * BH_ELECTRON_RADIUS_CM * lambda_cm *
+				lambda_cm * lambda_cm * inv_cm6;
 	double depth_cm = terms->share_per_density_cm3_g / (2 * terms->attenuation_cm2_g);
 
 	return terms->flux_s * crystal_inv_cm * depth_cm *

@@ -2,6 +2,7 @@
 
 #include <math.h>
 #include <stdio.h>
+#include <stdlib.h>
 #include <string.h>
 
 #include "base/units.h"
@@ -10,9 +11,9 @@
 #include "physics/symmetry.h"
 #include "physics/xray.h"
 
-/* Coordinates are printed with three to five decimals: images of a point on a special
- * position fall this far apart at most, while no two atoms come nearer. */
-static const double same_place_A = 0.15;
+/* A third printed as 0.33 puts images up to 0.06 Å apart in a cell of 10 Å; split sites of
+ * disorder are reported from 0.1 Å on. */
+static const double same_place_A = 0.06;
 
 /* Sites of one composition: how many atoms of each element are in the cell. */
 static void count_atoms(double atoms[BH_Z_MAX + 1], const bh_phase *phase)
@@ -23,31 +24,59 @@ static void count_atoms(double atoms[BH_Z_MAX + 1], const bh_phase *phase)
 			phase->sites[i].multiplicity * phase->sites[i].occupancy;
 }
 
-/* The largest number of formulas that leaves whole atoms (to 1 %); 1 when none does. */
-static double units_of(const double atoms[BH_Z_MAX + 1])
+/* Within 1 % of a whole number other than 0. */
+static bool is_whole(double n)
 {
-	for (int units = 96; units > 1; units--) {
+	return n > 0.5 && fabs(n - round(n)) < 0.01;
+}
+
+/* The largest number of formulas that leaves whole atoms of every element; 0: none does. */
+static int whole_units(const double atoms[BH_Z_MAX + 1])
+{
+	double fewest = HUGE_VAL;
+
+	for (int z = 1; z <= BH_Z_MAX; z++)
+		if (atoms[z] > 0)
+			fewest = fmin(fewest, atoms[z]);
+	for (int units = fewest < 1e4 ? (int)round(fewest) : 0; units > 0; units--) {
 		bool whole = true;
 
-		for (int z = 1; z <= BH_Z_MAX && whole; z++) {
-			double n = atoms[z] / units;
-
-			whole = atoms[z] <= 0 || (n > 0.99 && fabs(n - round(n)) < 0.01);
-		}
+		for (int z = 1; z <= BH_Z_MAX && whole; z++)
+			whole = atoms[z] <= 0 || is_whole(atoms[z] / units);
 		if (whole)
 			return units;
 	}
-	return 1;
+	return 0;
+}
+
+/* With shared or partly filled sites: what the numbers of places have in common. */
+static int common_places(const bh_phase *phase)
+{
+	int common = 0;
+
+	for (size_t i = 0; i < phase->site_count; i++) {
+		int a = common, b = phase->sites[i].multiplicity;
+
+		while (b) {
+			int rest = a % b;
+
+			a = b;
+			b = rest;
+		}
+		common = a;
+	}
+	return common;
 }
 
 static void add_symbol(char *formula, size_t room, int z, double n)
 {
 	size_t used = strlen(formula);
 
-	if (fabs(n - 1) < 0.005)
+	if (fabs(n - 1) < 0.01)
 		snprintf(formula + used, room - used, "%s", bh_xray_symbol(z));
-	else if (fabs(n - round(n)) < 0.01)
-		snprintf(formula + used, room - used, "%s%.0f", bh_xray_symbol(z), round(n));
+	else if (is_whole(n))
+		snprintf(formula + used, room - used, "%s%.0f", bh_xray_symbol(z),
+			 round(n));
 	else
 		snprintf(formula + used, room - used, "%s%.3g", bh_xray_symbol(z), n);
 }
@@ -76,13 +105,15 @@ bool bh_structure_resolve(bh_phase *phase, bh_arena *arena, bh_err *err)
 	double images[BH_MAX_IMAGES][3], atoms[BH_Z_MAX + 1], mass_g = 0;
 	bh_element_share *elements;
 	size_t n = 0;
+	int units;
 
 	phase->volume_A3 = bh_cell_volume_A3(&phase->cell);
 	if (phase->site_count == 0)
 		return true;
 	for (size_t i = 0; i < phase->site_count; i++)
-		phase->sites[i].multiplicity = (int)bh_symmetry_orbit(
-			&phase->group, &phase->cell, phase->sites[i].at, same_place_A, images);
+		phase->sites[i].multiplicity =
+			(int)bh_symmetry_orbit(&phase->group, &phase->cell,
+					       phase->sites[i].at, same_place_A, images);
 	count_atoms(atoms, phase);
 	elements = bh_new(arena, bh_element_share, BH_Z_MAX);
 	if (!elements)
@@ -96,7 +127,8 @@ bool bh_structure_resolve(bh_phase *phase, bh_arena *arena, bh_err *err)
 		}
 	phase->composition = (bh_composition){ elements, n };
 	bh_formula_normalise(&phase->composition);
-	phase->formula_units = units_of(atoms);
+	units = whole_units(atoms);
+	phase->formula_units = units ? units : common_places(phase);
 	write_formula(phase, atoms);
 	if (phase->volume_A3 > 0)
 		phase->density_g_cm3 = mass_g / BH_AVOGADRO_PER_MOL /
@@ -124,141 +156,232 @@ static double distance_A(const bh_mat3 *metric, const double a[3], const double 
 	return sqrt(best);
 }
 
-/* Occupancies that share the place of site i. */
-static double shared_occupancy(const bh_phase *phase, const bh_mat3 *metric, size_t i)
+/* How full the surroundings of a site are, and who stands nearest. */
+typedef struct {
+	double occupancy;
+	double nearest_A;
+	size_t other;
+} crowd;
+
+/* Images of one site, and how near is too near. */
+typedef struct {
+	bh_mat3 metric;
+	double images[BH_MAX_IMAGES][3];
+	size_t count;
+	double within_A;
+} neighbours;
+
+/* Add the images of site j to the surroundings of site i. */
+static void add_images(crowd *c, const bh_phase *phase, size_t i, size_t j,
+		       const neighbours *n)
 {
-	double images[BH_MAX_IMAGES][3], sum = 0;
+	for (size_t k = 0; k < n->count; k++) {
+		double d_A = distance_A(&n->metric, phase->sites[i].at, n->images[k]);
 
-	for (size_t j = 0; j < phase->site_count; j++) {
-		size_t count = bh_symmetry_orbit(&phase->group, &phase->cell, phase->sites[j].at,
-						 same_place_A, images);
-
-		for (size_t k = 0; k < count; k++)
-			if (distance_A(metric, phase->sites[i].at, images[k]) < same_place_A)
-				sum += phase->sites[j].occupancy;
+		if (d_A >= n->within_A)
+			continue;
+		c->occupancy += phase->sites[j].occupancy;
+		if ((i != j || d_A >= same_place_A) && d_A < c->nearest_A) {
+			c->nearest_A = d_A;
+			c->other = j;
+		}
 	}
-	return sum;
+}
+
+static bool crowded(const bh_phase *phase, crowd *crowds, double within_A, size_t *i)
+{
+	neighbours n = { .metric = bh_cell_metric(&phase->cell), .within_A = within_A };
+
+	for (*i = 0; *i < phase->site_count; ++*i)
+		crowds[*i] = (crowd){ 0, HUGE_VAL, *i };
+	for (size_t j = 0; j < phase->site_count; j++) {
+		n.count = bh_symmetry_orbit(&phase->group, &phase->cell,
+					    phase->sites[j].at, same_place_A, n.images);
+		for (*i = 0; *i < phase->site_count; ++*i)
+			add_images(&crowds[*i], phase, *i, j, &n);
+	}
+	/* occupancies are printed with three decimals: 0.334 three times */
+	for (*i = 0; *i < phase->site_count; ++*i)
+		if (crowds[*i].occupancy > 1.0025 && crowds[*i].nearest_A < within_A)
+			return true;
+	return false;
 }
 
 bool bh_structure_clash(const bh_phase *phase, double within_A, size_t *i, size_t *j,
 			double *distance)
 {
-	double images[BH_MAX_IMAGES][3];
-	bh_mat3 metric = bh_cell_metric(&phase->cell);
+	bh_arena *arena = bh_arena_new();
+	crowd *crowds = arena ? bh_new(arena, crowd, phase->site_count) : NULL;
+	bool found = crowds && crowded(phase, crowds, within_A, i);
 
-	for (*j = 0; *j < phase->site_count; ++*j) {
-		size_t count = bh_symmetry_orbit(&phase->group, &phase->cell,
-						 phase->sites[*j].at, same_place_A, images);
-
-		for (*i = 0; *i <= *j; ++*i) {
-			double both = phase->sites[*i].occupancy + phase->sites[*j].occupancy;
-
-			for (size_t k = 0; k < count; k++) {
-				*distance = distance_A(&metric, phase->sites[*i].at, images[k]);
-				if (*distance >= within_A ||
-				    (*i == *j && *distance < same_place_A))
-					continue;
-				/* partly filled sites may stand for disorder: not both at once */
-				if (both > 1.001 ||
-				    (*distance < same_place_A &&
-				     shared_occupancy(phase, &metric, *i) > 1.001))
-					return true;
-			}
-		}
+	if (found) {
+		*j = crowds[*i].other;
+		*distance = crowds[*i].nearest_A;
 	}
-	return false;
+	bh_arena_free(arena);
+	return found;
 }
 
-/* All atoms of the cell, site by site. */
+/* All atoms of the cell, site by site, and exp(2πi n x) of each along each axis for every
+ * index n that the planes have: products of three replace a sine and a cosine an atom. */
 typedef struct {
-	double (*at)[3];
-	size_t *first; /* of each site, and one past the last */
+	double re, im;
+} wave;
+
+typedef struct {
 	const bh_phase *phase;
+	size_t *first;	/* atom of each site, and one past the last */
+	wave *waves[3]; /* by atom · (2 most + 1) + most + index     */
+	int most[3];
 } atoms_list;
 
-static bool expand(atoms_list *list, bh_arena *arena, const bh_phase *phase)
+static bool place(atoms_list *list, bh_arena *arena, const bh_phase *phase,
+		  double (**at)[3])
 {
 	size_t n = 0;
 
-	list->phase = phase;
-	list->at = bh_arena_take(arena, phase->site_count * BH_MAX_IMAGES, sizeof *list->at);
+	*at = bh_arena_take(arena, phase->site_count * phase->group.op_count,
+			    sizeof **at);
 	list->first = bh_new(arena, size_t, phase->site_count + 1);
-	if (!list->at || !list->first)
+	if (!*at || !list->first)
 		return false;
 	for (size_t i = 0; i < phase->site_count; i++) {
+		double images[BH_MAX_IMAGES][3];
+		size_t count =
+			bh_symmetry_orbit(&phase->group, &phase->cell, phase->sites[i].at,
+					  same_place_A, images);
+
 		list->first[i] = n;
-		n += bh_symmetry_orbit(&phase->group, &phase->cell, phase->sites[i].at,
-				       same_place_A, list->at + n);
+		memcpy(*at + n, images, count * sizeof *images);
+		n += count;
 	}
 	list->first[phase->site_count] = n;
 	return true;
 }
 
-/* Σ exp(2πi h·x) over a site's atoms. */
-static void geometric(double *re, double *im, const atoms_list *list, size_t site,
-		      const int h[3])
+static bool make_waves(atoms_list *list, bh_arena *arena, double (*at)[3])
 {
-	*re = *im = 0;
-	for (size_t k = list->first[site]; k < list->first[site + 1]; k++) {
-		double turn = 2 * BH_PI * (h[0] * list->at[k][0] + h[1] * list->at[k][1] +
-					   h[2] * list->at[k][2]);
+	size_t atoms = list->first[list->phase->site_count];
 
-		*re += cos(turn);
-		*im += sin(turn);
+	for (int axis = 0; axis < 3; axis++) {
+		int most = list->most[axis];
+		size_t stride = 2 * (size_t)most + 1;
+
+		list->waves[axis] = bh_new(arena, wave, atoms * stride);
+		if (!list->waves[axis])
+			return false;
+		for (size_t k = 0; k < atoms; k++)
+			for (int n = -most; n <= most; n++) {
+				double turn = 2 * BH_PI * n * at[k][axis];
+
+				list->waves[axis][k * stride + (size_t)(most + n)] =
+					(wave){ cos(turn), sin(turn) };
+			}
 	}
+	return true;
 }
 
-enum { MOST_ENERGIES = 8 };
+static bool expand(atoms_list *list, bh_arena *arena, const bh_phase *phase,
+		   const int (*h)[3], size_t planes)
+{
+	double(*at)[3];
 
-/* f' and f'' of every site at every energy. */
+	for (size_t i = 0; i < planes; i++)
+		for (int j = 0; j < 3; j++)
+			list->most[j] = abs(h[i][j]) > list->most[j] ? abs(h[i][j])
+								     : list->most[j];
+	return place(list, arena, phase, &at) && make_waves(list, arena, at);
+}
+
+/* Σ exp(2πi h·x) over a site's atoms. */
+static wave geometric(const atoms_list *list, size_t site, const int h[3])
+{
+	wave sum = { 0, 0 };
+	size_t stride[3], offset[3];
+
+	for (int j = 0; j < 3; j++) {
+		stride[j] = 2 * (size_t)list->most[j] + 1;
+		offset[j] = (size_t)(list->most[j] + h[j]);
+	}
+	for (size_t k = list->first[site]; k < list->first[site + 1]; k++) {
+		wave a = list->waves[0][k * stride[0] + offset[0]];
+		wave b = list->waves[1][k * stride[1] + offset[1]];
+		wave c = list->waves[2][k * stride[2] + offset[2]];
+		wave ab = { a.re * b.re - a.im * b.im, a.re * b.im + a.im * b.re };
+
+		sum.re += ab.re * c.re - ab.im * c.im;
+		sum.im += ab.re * c.im + ab.im * c.re;
+	}
+	return sum;
+}
+
+/* f' and f'' of every element at every energy. */
 typedef struct {
-	double *f1, *f2; /* site · energies + energy */
+	double *real, *imaginary; /* z · energies + energy */
 } dispersion;
 
 static bool disperse(dispersion *d, bh_arena *arena, const bh_phase *phase,
 		     const double *energy_keV, size_t energies, bh_without without)
 {
-	d->f1 = bh_new(arena, double, phase->site_count * energies);
-	d->f2 = bh_new(arena, double, phase->site_count * energies);
-	if (!d->f1 || !d->f2)
-		return false;
-	for (size_t i = 0; i < phase->site_count && !without.anomalous; i++)
-		for (size_t k = 0; k < energies; k++) {
-			int z = phase->sites[i].z;
+	bool done[BH_Z_MAX + 1] = { false };
 
-			d->f1[i * energies + k] = bh_xray_f_prime(z, energy_keV[k]);
-			d->f2[i * energies + k] = bh_xray_f_double_prime(z, energy_keV[k]);
+	d->real = bh_new(arena, double, (BH_Z_MAX + 1) * energies);
+	d->imaginary = bh_new(arena, double, (BH_Z_MAX + 1) * energies);
+	if (!d->real || !d->imaginary)
+		return false;
+	for (size_t i = 0; i < phase->site_count && !without.anomalous; i++) {
+		int z = phase->sites[i].z;
+
+		for (size_t k = 0; k < energies && !done[z]; k++) {
+			d->real[(size_t)z * energies + k] =
+				bh_xray_f_prime(z, energy_keV[k]);
+			d->imaginary[(size_t)z * energies + k] =
+				bh_xray_f_double_prime(z, energy_keV[k]);
 		}
+		done[z] = true;
+	}
 	return true;
 }
 
-/* |F|² of one plane at every energy. With A = Σ (f0 + f') g cos etc., F(h) and F(−h) differ
- * in the sign of the phase only, so the mean of the squares is
- * |Σ f1 G|² + |Σ f2 G|², f1 = f0 + f', both times occupancy and exp(−B s²). */
-static void plane_f2(double *f2, const atoms_list *list, const dispersion *d, const int h[3],
-		     double d_A, size_t energies)
+/* Of one plane, by element: Σ occupancy exp(−B s²) Σ exp(2πi h·x). */
+static void element_sums(wave sums[BH_Z_MAX + 1], const atoms_list *list, const int h[3],
+			 double s_inv_A)
 {
-	double s = 1 / (2 * d_A), sums[MOST_ENERGIES][4] = { { 0 } };
-
+	memset(sums, 0, sizeof *sums * (BH_Z_MAX + 1));
 	for (size_t i = 0; i < list->phase->site_count; i++) {
 		const bh_site *site = &list->phase->sites[i];
-		double weight = site->occupancy * exp(-site->b_iso_A2 * s * s);
-		double f0 = bh_xray_f0(site->z, s), re, im;
+		double weight =
+			site->occupancy * exp(-site->b_iso_A2 * s_inv_A * s_inv_A);
+		wave g = geometric(list, i, h);
 
-		geometric(&re, &im, list, i, h);
-		for (size_t k = 0; k < energies; k++) {
-			double real = weight * (f0 + d->f1[i * energies + k]);
-			double imaginary = weight * d->f2[i * energies + k];
-
-			sums[k][0] += real * re;
-			sums[k][1] += real * im;
-			sums[k][2] += imaginary * re;
-			sums[k][3] += imaginary * im;
-		}
+		sums[site->z].re += weight * g.re;
+		sums[site->z].im += weight * g.im;
 	}
-	for (size_t k = 0; k < energies; k++)
-		f2[k] = sums[k][0] * sums[k][0] + sums[k][1] * sums[k][1] +
-			sums[k][2] * sums[k][2] + sums[k][3] * sums[k][3];
+}
+
+/* |F|² of one plane at every energy. F(h) and F(−h) differ in the sign of the phase only, so
+ * the mean of their squares is |Σ (f0 + f') G|² + |Σ f'' G|², G by element. */
+static void plane_f2(double *f2, const wave sums[BH_Z_MAX + 1], const dispersion *d,
+		     double s_inv_A, size_t energies)
+{
+	double f0[BH_Z_MAX + 1];
+
+	for (int z = 1; z <= BH_Z_MAX; z++)
+		f0[z] = sums[z].re != 0 || sums[z].im != 0 ? bh_xray_f0(z, s_inv_A) : 0;
+	for (size_t k = 0; k < energies; k++) {
+		wave a = { 0, 0 }, b = { 0, 0 };
+
+		for (int z = 1; z <= BH_Z_MAX; z++) {
+			double real = f0[z] + d->real[(size_t)z * energies + k];
+			double imaginary = d->imaginary[(size_t)z * energies + k];
+
+			a.re += real * sums[z].re;
+			a.im += real * sums[z].im;
+			b.re += imaginary * sums[z].re;
+			b.im += imaginary * sums[z].im;
+		}
+		f2[k] = a.re * a.re + a.im * a.im + b.re * b.re + b.im * b.im;
+	}
 }
 
 bool bh_structure_f2_table(double *f2, bh_arena *arena, const bh_phase *phase,
@@ -266,19 +389,24 @@ bool bh_structure_f2_table(double *f2, bh_arena *arena, const bh_phase *phase,
 			   const double *energy_keV, size_t energies, bh_without without,
 			   bh_err *err)
 {
-	atoms_list list;
+	atoms_list list = { .phase = phase };
+	wave sums[BH_Z_MAX + 1];
 	dispersion d;
 
-	if (!expand(&list, arena, phase) ||
+	if (!expand(&list, arena, phase, h, planes) ||
 	    !disperse(&d, arena, phase, energy_keV, energies, without))
 		return bh_fail_memory(err);
-	for (size_t i = 0; i < planes; i++)
-		plane_f2(f2 + i * energies, &list, &d, h[i], d_A[i], energies);
+	for (size_t i = 0; i < planes; i++) {
+		double s_inv_A = 1 / (2 * d_A[i]);
+
+		element_sums(sums, &list, h[i], s_inv_A);
+		plane_f2(f2 + i * energies, sums, &d, s_inv_A, energies);
+	}
 	return true;
 }
 
-double bh_structure_f2(const bh_phase *phase, const int h[3], double d_A, double energy_keV,
-		       bh_without without)
+double bh_structure_f2(const bh_phase *phase, const int h[3], double d_A,
+		       double energy_keV, bh_without without)
 {
 	bh_arena *arena = bh_arena_new();
 	bh_err err = { BH_OK, 0, 0, "", "", "" };

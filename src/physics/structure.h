@@ -13,26 +13,27 @@
 
 /* What of a structure factor to leave out, for comparison with tables. */
 typedef struct {
-	bool anomalous;  /* f' = f'' = 0 */
+	bool anomalous; /* f' = f'' = 0 */
 } bh_without;
 
 /* Fill volume, site multiplicities, composition, formula text (lowest whole numbers where
- * they exist, else per cell), formula units in the cell and X-ray density of a phase with
- * atoms; volume alone for one without atoms.
+ * they exist, else as many formulas as the numbers of places have in common), formula units
+ * in the cell and X-ray density of a phase with atoms; volume alone for one without atoms.
+ * Images of a site closer than 0.06 Å are one atom.
  *   false  memory is out */
 bool bh_structure_resolve(bh_phase *phase, bh_arena *arena, bh_err *err);
 
-/* Two sites that clash: closer than within_A, or the same place with occupancies above 1.
- * Returns true and names the pair and the distance (an image of site i against site j;
- * i == j: two images of one site). */
+/* A place that holds more than one atom: the occupancies of all images within within_A of a
+ * site exceed 1. Returns true and names the nearest pair and its distance (site i against an
+ * image of site j; i == j: two images of one site). */
 bool bh_structure_clash(const bh_phase *phase, double within_A, size_t *i, size_t *j,
 			double *distance_A);
 
 /* |F|² of one plane, electrons²: ½(|F(h)|² + |F(−h)|²),
  * F = Σ occ (f0(s) + f' + i f'') exp(−B s²) exp(2πi h·x), all atoms of the cell.
  *   from  International Tables C (2004), 6.1 */
-double bh_structure_f2(const bh_phase *phase, const int h[3], double d_A, double energy_keV,
-		       bh_without without);
+double bh_structure_f2(const bh_phase *phase, const int h[3], double d_A,
+		       double energy_keV, bh_without without);
 
 /* The same for many planes and photon energies at once; f2[i·energies + k]. Atoms of the
  * cell are expanded once.

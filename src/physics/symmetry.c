@@ -16,13 +16,15 @@ enum { ROWS = 530, SHOWN = 60 };
  * the lattice that is added to it. */
 static const struct {
 	const char *name;
-	int row;
+	int number, row;
 } centred[] = {
-	{ "A 1", 1 },	    { "B 1", 1 },	 { "C 1", 1 },	       { "F 1", 1 },
-	{ "I 1", 1 },	    { "A -1", 2 },	 { "B -1", 2 },	       { "C -1", 2 },
-	{ "F -1", 2 },	    { "I -1", 2 },	 { "C 1 1 2", 4 },     { "C 1 1 21", 7 },
-	{ "C 1 21 1", 6 },  { "I 1 21 1", 6 },	 { "F 1 2/m 1", 57 },  { "C 4 2 2", 366 },
-	{ "F 4 2 2", 366 }, { "C -4 2 m", 376 }, { "F 4/m m m", 400 },
+	{ "A 1", 1, 1 },	   { "B 1", 1, 1 },	   { "C 1", 1, 1 },
+	{ "F 1", 1, 1 },	   { "I 1", 1, 1 },	   { "A -1", 2, 2 },
+	{ "B -1", 2, 2 },	   { "C -1", 2, 2 },	   { "F -1", 2, 2 },
+	{ "I -1", 2, 2 },	   { "C 1 1 2", 3, 4 },	   { "C 1 1 21", 4, 7 },
+	{ "C 1 21 1", 5, 6 },	   { "I 1 21 1", 5, 6 },   { "F 1 2/m 1", 12, 57 },
+	{ "C 4 2 2", 89, 366 },	   { "F 4 2 2", 97, 366 }, { "C -4 2 m", 115, 388 },
+	{ "F 4/m m m", 139, 400 },
 };
 
 enum { CENTRED = sizeof centred / sizeof *centred };
@@ -39,20 +41,19 @@ static bh_symbol_row row_of(int row, SpglibSpacegroupType *type)
 }
 
 /* The first of the rows that fit best, 0: none. Rows of a number stand together: unique axis
- * b, cell choice 1, origin 1, hexagonal axes first. *fits_without: a row that the symbol fits
- * but for its choice. */
-static int find_row(const bh_symbol *symbol, int *fits_without)
+ * b, cell choice 1, origin 1, hexagonal axes first. *but_for_choice: the symbol alone fits
+ * some row. */
+static int find_row(const bh_symbol *symbol, bool *but_for_choice)
 {
 	int found = 0, best = 0;
 
-	*fits_without = 0;
+	*but_for_choice = false;
 	for (int i = 1; i <= ROWS; i++) {
 		SpglibSpacegroupType type;
 		bh_symbol_row row = row_of(i, &type);
 		int fit = bh_symbol_fit(symbol, &row);
 
-		if (fit > 0 && !*fits_without)
-			*fits_without = i;
+		*but_for_choice = *but_for_choice || fit > 0;
 		if (fit > best && bh_symbol_choice(symbol, &row)) {
 			found = i;
 			best = fit;
@@ -102,26 +103,27 @@ static void offer(candidate best[3], const char *name, size_t distance)
 		}
 }
 
-/* Choices that a group offers, as ":1, :2". */
-static void write_choices(char *to, size_t room, int number)
+/* Choices that a symbol has, as ":1, :2". */
+static void write_choices(char *to, size_t room, const bh_symbol *symbol)
 {
 	size_t n = 0;
 
 	to[0] = '\0';
-	for (int row = 1; row <= ROWS; row++) {
-		SpglibSpacegroupType type = spg_get_spacegroup_type(row);
+	for (int i = 1; i <= ROWS; i++) {
+		SpglibSpacegroupType type;
+		bh_symbol_row row = row_of(i, &type);
 
-		if (type.number == number && type.choice[0] && n + 12 < room)
+		if (type.choice[0] && n + 12 < room && bh_symbol_fit(symbol, &row) > 0)
 			n += (size_t)snprintf(to + n, room - n, "%s:%.6s", n ? ", " : "",
 					      type.choice);
 	}
 }
 
-static bool wrong_choice(const char *text, const bh_symbol *symbol, int row, bh_err *err)
+static bool wrong_choice(const char *text, const bh_symbol *symbol, bh_err *err)
 {
 	char choices[200];
 
-	write_choices(choices, sizeof choices, spg_get_spacegroup_type(row).number);
+	write_choices(choices, sizeof choices, symbol);
 	return bh_fail(
 		err, BH_BAD_INPUT, "space group \"%.*s\" has no choice \":%s\"\n%s%s",
 		SHOWN, text, symbol->choice,
@@ -131,7 +133,10 @@ static bool wrong_choice(const char *text, const bh_symbol *symbol, int row, bh_
 
 static bool unknown(const char *text, const char *squeezed, bh_err *err)
 {
-	candidate best[3] = { { 99, "" }, { 99, "" }, { 99, "" } };
+	/* a name that shares nothing with the text is no help */
+	size_t most = strlen(squeezed);
+	candidate best[3] = { { most, "" }, { most, "" }, { most, "" } };
+	char nearest[3 * BH_SYMBOL_ROOM] = "";
 
 	for (int i = 1; i <= ROWS; i++) {
 		SpglibSpacegroupType type;
@@ -144,13 +149,15 @@ static bool unknown(const char *text, const char *squeezed, bh_err *err)
 		if (bh_symbol_read(&other, name))
 			offer(best, name, bh_nearest_distance(squeezed, other.squeezed));
 	}
-	return bh_fail(err, BH_BAD_INPUT,
-		       "unknown space group \"%.*s\"\nnearest: \"%s\", \"%s\", \"%s\"; "
-		       "allowed: a "
-		       "Hermann-Mauguin or Hall symbol, or a number 1 to 230, with :1 :2 "
-		       ":H :R where "
-		       "there is a choice",
-		       SHOWN, text, best[0].name, best[1].name, best[2].name);
+	for (size_t i = 0, n = 0; i < 3 && best[i].name[0]; i++)
+		n += (size_t)snprintf(nearest + n, sizeof nearest - n, "%s\"%.20s\"%s",
+				      i ? ", " : "nearest: ", best[i].name,
+				      i == 2 || !best[i + 1].name[0] ? "; " : "");
+	return bh_fail(
+		err, BH_BAD_INPUT,
+		"unknown space group \"%.*s\"\n%sallowed: a Hermann-Mauguin or Hall "
+		"symbol, or a number 1 to 230, with :1 :2 :H :R where there is a choice",
+		SHOWN, text, nearest);
 }
 
 static bool centric(const bh_space_group *group)
@@ -237,6 +244,7 @@ static bool make_centred(bh_space_group *group, bh_arena *arena, int i, bh_err *
 				op->shift[j] = fmod(op->shift[j] + points[p][j], 1);
 		}
 	group->op_count = n * (more + 1);
+	group->number = centred[i].number;
 	group->hall_number = 0;
 	group->choice[0] = '\0';
 	snprintf(group->symbol, sizeof group->symbol, "%s", centred[i].name);
@@ -250,17 +258,18 @@ bool bh_symmetry_find(bh_space_group *group, bool *origin_open, bh_arena *arena,
 		      const char *text, bh_err *err)
 {
 	bh_symbol symbol;
-	int row, near_miss, extra;
+	bool but_for_choice;
+	int row, extra;
 
 	*origin_open = false;
 	if (!bh_symbol_read(&symbol, text))
-		return unknown(text, "", err);
-	row = find_row(&symbol, &near_miss);
+		return unknown(text, text, err);
+	row = find_row(&symbol, &but_for_choice);
 	extra = row ? CENTRED : find_centred(&symbol);
 	if (extra < CENTRED)
 		return make_centred(group, arena, extra, err);
-	if (!row && near_miss)
-		return wrong_choice(text, &symbol, near_miss, err);
+	if (!row && but_for_choice)
+		return wrong_choice(text, &symbol, err);
 	if (!row)
 		return unknown(text, symbol.squeezed, err);
 	if (!bh_symmetry_row(group, arena, row, err))

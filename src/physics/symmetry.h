@@ -23,7 +23,8 @@ bool bh_symmetry_find(bh_space_group *group, bool *origin_open, bh_arena *arena,
 		      const char *text, bh_err *err);
 
 /* The group of one row of the database, 1 to 530. */
-bool bh_symmetry_row(bh_space_group *group, bh_arena *arena, int hall_number, bh_err *err);
+bool bh_symmetry_row(bh_space_group *group, bh_arena *arena, int hall_number,
+		     bh_err *err);
 
 /* Largest relative misfit of the metric under the operations: 0 for a cell that the group
  * allows, e.g. 0.02 for a = 4.9, b = 5.0 in a cubic group. */

@@ -64,8 +64,11 @@ static bool gather_phases(bh_plan *plan, bh_err *err)
 
 static bh_scene scene_of(const bh_plan *plan)
 {
-	return (bh_scene){ plan->request, plan->instrument, plan->phases, plan->phase_count,
-			   plan->has_holder };
+	return (bh_scene){ .request = plan->request,
+			   .instrument = plan->instrument,
+			   .phases = plan->phases,
+			   .phase_count = plan->phase_count,
+			   .has_holder = plan->has_holder };
 }
 
 bool bh_plan_observe(bh_plan *plan, bh_arena *arena, const bh_request *request, bh_err *err)

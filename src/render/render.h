@@ -20,6 +20,9 @@ bool bh_render_text(bh_text *text, const bh_plan *plan, bh_look look, bh_err *er
 bool bh_render_json(bh_text *text, const bh_plan *plan, bh_err *err);
 bool bh_render_page(bh_text *bytes, const bh_plan *plan, bh_page_kind kind, bh_err *err);
 
+/* Give back what the drawing libraries keep until the end of the process. */
+void bh_page_release(void);
+
 /* The reflections only. */
 bool bh_render_reflections_text(bh_text *text, const bh_plan *plan, bh_look look, bh_err *err);
 bool bh_render_reflections_json(bh_text *text, const bh_plan *plan, bh_err *err);
