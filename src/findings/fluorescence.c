@@ -209,7 +209,7 @@ static bool report(bh_findings *findings, const bh_target_result *t, emitter e)
 			.text = bh_say(findings,
 				       "%s fluoresces, excited mostly by %s: %.3g counts/s in one "
 				       "aperture beside a peak of %.3g. It costs this line a factor "
-				       "%.2f in count time.",
+				       "%.2g in count time.",
 				       bh_xray_symbol(e.z), by_continuum, at_target, peak_cps, cost),
 			.evidence = { { "element", e.z, "Z" },
 				      { "energy", bh_xray_group_keV(e.z, strcmp(e.line, "Ka") == 0

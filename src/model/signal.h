@@ -33,6 +33,7 @@ typedef struct {
 	size_t count;
 	double kbeta_ratio;        /* Kβ:Kα as detected, photons                      */
 	double kbeta_ratio_at_specimen;
+	double overvoltage;        /* kV over the anode's K edge                      */
 	double polarization;       /* A = cos²2θ_M of the monochromator, else 1       */
 } bh_radiation;
 

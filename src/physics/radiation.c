@@ -7,6 +7,7 @@
 #include "physics/detector.h"
 #include "physics/filter.h"
 #include "physics/tube.h"
+#include "physics/xray.h"
 
 enum { BERYLLIUM = 4 };
 
@@ -82,7 +83,10 @@ void bh_radiation_make(bh_radiation *radiation, const bh_instrument *instrument,
 {
 	double beam = bh_radiation_beam_sr_mA(instrument, setting);
 
-	*radiation = (bh_radiation){ .polarization = bh_filter_polarization(setting->tube) };
+	*radiation = (bh_radiation){
+		.overvoltage = setting->kV / bh_xray_edge_keV(setting->tube->anode->z, BH_SHELL_K),
+		.polarization = bh_filter_polarization(setting->tube),
+	};
 	for (int kind = 0; kind < BH_LINE_KINDS; kind++) {
 		double lambda_A = wavelength_A(setting->tube->anode, kind);
 		double energy_keV = bh_energy_keV(lambda_A);

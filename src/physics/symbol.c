@@ -8,12 +8,14 @@
 enum { LENGTH = BH_SYMBOL_LENGTH, FIRST_MONOCLINIC = 3, LAST_MONOCLINIC = 15 };
 enum { FIRST_CUBIC = 195, GROUPS = 230 };
 
-/* clang-format off */
-/* Symbols of International Tables A before 1992, where the database writes the glide e. */
-static const struct {
+typedef struct {
 	int row;
 	const char *name;
-} old_names[] = {
+} alias;
+
+/* clang-format off */
+/* Symbols of International Tables A before 1992, where the database writes the glide e. */
+static const alias old_names[] = {
 	{ 191, "A b m 2" }, { 192, "B m a 2" }, { 193, "B 2 c m" }, { 194, "C 2 m b" },
 	{ 195, "C m 2 a" }, { 196, "A c 2 m" }, { 203, "A b a 2" }, { 204, "B b a 2" },
 	{ 205, "B 2 c b" }, { 206, "C 2 c b" }, { 207, "C c 2 a" }, { 208, "A c 2 a" },
@@ -23,6 +25,28 @@ static const struct {
 	{ 322, "C c c a" }, { 323, "C c c a" }, { 324, "C c c b" }, { 325, "C c c b" },
 	{ 326, "A b a a" }, { 327, "A b a a" }, { 328, "A c a a" }, { 329, "A c a a" },
 	{ 330, "B b c b" }, { 331, "B b c b" }, { 332, "B b a b" }, { 333, "B b a b" },
+};
+
+/* Other spellings of Hall symbols, of other generators of the same operations (S. R. Hall,
+ * Acta Cryst. A37 (1981) 517), as files have them; the tests compare the operations. */
+static const alias other_halls[] = {
+	{ 40, "A -2yab" }, { 43, "C -2yac" }, { 46, "B -2ab" }, { 49, "A -2ab" },
+	{ 52, "C -2xac" }, { 55, "B -2xab" }, { 91, "-A 2yab" }, { 94, "-C 2yac" },
+	{ 97, "-B 2ab" }, { 100, "-A 2ab" }, { 103, "-C 2xac" }, { 106, "-B 2xab" },
+	{ 191, "A 2 -2b" }, { 192, "B 2 -2a" }, { 193, "B -2a 2" }, { 194, "C -2a 2" },
+	{ 195, "C -2a -2a" }, { 196, "A -2b -2b" }, { 203, "A 2 -2ab" },
+	{ 204, "B 2 -2ab" }, { 205, "B -2ab 2" }, { 206, "C -2ac 2" },
+	{ 207, "C -2ac -2ac" }, { 208, "A -2ab -2ab" }, { 304, "-C 2ac 2" },
+	{ 305, "-C 2ac 2ac" }, { 306, "-A 2ab 2ab" }, { 307, "-A 2 2ab" },
+	{ 308, "-B 2 2ab" }, { 309, "-B 2ab 2" }, { 316, "-C 2a 2" },
+	{ 317, "-C 2a 2a" }, { 318, "-A 2b 2b" }, { 319, "-A 2 2b" },
+	{ 320, "-B 2 2a" }, { 321, "-B 2a 2" }, { 322, "C 2 2 -1ac" },
+	{ 323, "-C 2a 2ac" }, { 325, "-C 2a 2c" }, { 326, "A 2 2 -1ab" },
+	{ 327, "-A 2a 2b" }, { 329, "-A 2ab 2b" }, { 330, "B 2 2 -1ab" },
+	{ 331, "-B 2ab 2b" }, { 333, "-B 2b 2ab" }, { 440, "P 31 2 (0 0 4)" },
+	{ 442, "P 32 2 (0 0 2)" }, { 472, "P 61 2 (0 0 5)" },
+	{ 474, "P 62 2 (0 0 4)" }, { 475, "P 64 2 (0 0 2)" }, { 515, "F -4a 2 3" },
+	{ 524, "-F 4a 2 3" }, { 527, "F 4d 2 3 -1ad" }, { 528, "-F 4ud 2vw 3" },
 };
 /* clang-format on */
 
@@ -230,14 +254,35 @@ static bool alike(const char *text, const char *listed)
 	return *text == *listed;
 }
 
-bool bh_symbol_is_hall(const bh_symbol *symbol, const char *hall)
+/* Equal apart from the case of letters and, when `loose`, apart from blanks. */
+static bool same_hall(const char *text, const char *hall, bool loose)
 {
-	const char *text = symbol->hall;
-
-	for (; *text && *hall; text++, hall++)
+	for (;; text++, hall++) {
+		while (loose && *text == ' ')
+			text++;
+		while (loose && *hall == ' ')
+			hall++;
 		if (*text != tolower((unsigned char)*hall))
 			return false;
-	return *text == *hall;
+		if (!*text)
+			return true;
+	}
+}
+
+static bool any_hall(const bh_symbol *symbol, const bh_symbol_row *row, bool loose)
+{
+	if (same_hall(symbol->hall, row->hall, loose))
+		return true;
+	for (size_t i = 0; i < sizeof other_halls / sizeof *other_halls; i++)
+		if (other_halls[i].row == row->row &&
+		    same_hall(symbol->hall, other_halls[i].name, loose))
+			return true;
+	return false;
+}
+
+bool bh_symbol_is_hall(const bh_symbol *symbol, const bh_symbol_row *row)
+{
+	return any_hall(symbol, row, true);
 }
 
 int bh_symbol_fit(const bh_symbol *symbol, const bh_symbol_row *row)
@@ -261,8 +306,10 @@ int bh_symbol_fit(const bh_symbol *symbol, const bh_symbol_row *row)
 			fit = 1;
 		best = fit > best ? fit : best;
 	}
-	if (best < 4 && bh_symbol_is_hall(symbol, row->hall))
+	if (best < 4 && any_hall(symbol, row, false))
 		best = 4;
+	if (best < 1 && any_hall(symbol, row, true))
+		best = 1;
 	return best;
 }
 

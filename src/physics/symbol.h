@@ -35,14 +35,14 @@ typedef struct {
 bool bh_symbol_read(bh_symbol *symbol, const char *text);
 
 /* How well a setting fits a symbol; 0: not at all. In falling order: number; Hermann-Mauguin
- * with its blanks; Hall; Hermann-Mauguin without blanks; an older spelling (cubic groups
+ * with its blanks; Hall; Hermann-Mauguin without blanks; what is left: an older spelling (cubic groups
  * without the bar, "F d 3 m"; other letters for the glide e). The choice is not looked at.
  *   from  International Tables A (2016), 1.4, and for e P. M. de Wolff et al., Acta Cryst. A48
  *         (1992) 727 */
 int bh_symbol_fit(const bh_symbol *symbol, const bh_symbol_row *row);
 
-/* Whether a symbol is this Hall symbol; the case of letters does not matter. */
-bool bh_symbol_is_hall(const bh_symbol *symbol, const char *hall);
+/* Whether a symbol is a Hall symbol of the row; case and blanks do not matter. */
+bool bh_symbol_is_hall(const bh_symbol *symbol, const bh_symbol_row *row);
 
 /* Whether the choice behind ":" is the row's: as listed, or "1" for all of "1", "1cab"... */
 bool bh_symbol_choice(const bh_symbol *symbol, const bh_symbol_row *row);

@@ -74,12 +74,6 @@ static int find_centred(const bh_symbol *symbol)
 	return CENTRED;
 }
 
-/* Whether a row is origin 1 of a group that has an origin 2. */
-static bool two_origins(int row)
-{
-	return spg_get_spacegroup_type(row).choice[0] == '1';
-}
-
 typedef struct {
 	size_t distance;
 	char name[BH_SYMBOL_ROOM];
@@ -258,6 +252,8 @@ bool bh_symmetry_find(bh_space_group *group, bool *origin_open, bh_arena *arena,
 		      const char *text, bh_err *err)
 {
 	bh_symbol symbol;
+	bh_symbol_row found;
+	SpglibSpacegroupType type;
 	bool but_for_choice;
 	int row, extra;
 
@@ -274,8 +270,10 @@ bool bh_symmetry_find(bh_space_group *group, bool *origin_open, bh_arena *arena,
 		return unknown(text, symbol.squeezed, err);
 	if (!bh_symmetry_row(group, arena, row, err))
 		return false;
-	*origin_open = two_origins(row) && symbol.choice[0] == '\0' &&
-		       !bh_symbol_is_hall(&symbol, group->hall);
+	found = row_of(row, &type);
+	/* choice 1 stands in the table only beside a choice 2 */
+	*origin_open = type.choice[0] == '1' && symbol.choice[0] == '\0' &&
+		       !bh_symbol_is_hall(&symbol, &found);
 	return true;
 }
 

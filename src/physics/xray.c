@@ -21,32 +21,12 @@ static bool known(int z)
 
 int bh_xray_z(const char *symbol)
 {
-	for (int z = 1; z <= BH_Z_MAX; z++) {
-		const char *name = bh_xray_symbol(z);
-		size_t i = 0;
-
-		while (name[i] && name[i] == symbol[i])
-			i++;
-		if (!name[i] && !symbol[i])
-			return z;
-	}
-	return 0;
+	return bh_element_z(symbol);
 }
 
 const char *bh_xray_symbol(int z)
 {
-	static const char symbols[BH_Z_MAX][3] = {
-		"H",  "He", "Li", "Be", "B",  "C",  "N",  "O",	"F",  "Ne", "Na", "Mg",
-		"Al", "Si", "P",  "S",	"Cl", "Ar", "K",  "Ca", "Sc", "Ti", "V",  "Cr",
-		"Mn", "Fe", "Co", "Ni", "Cu", "Zn", "Ga", "Ge", "As", "Se", "Br", "Kr",
-		"Rb", "Sr", "Y",  "Zr", "Nb", "Mo", "Tc", "Ru", "Rh", "Pd", "Ag", "Cd",
-		"In", "Sn", "Sb", "Te", "I",  "Xe", "Cs", "Ba", "La", "Ce", "Pr", "Nd",
-		"Pm", "Sm", "Eu", "Gd", "Tb", "Dy", "Ho", "Er", "Tm", "Yb", "Lu", "Hf",
-		"Ta", "W",  "Re", "Os", "Ir", "Pt", "Au", "Hg", "Tl", "Pb", "Bi", "Po",
-		"At", "Rn", "Fr", "Ra", "Ac", "Th", "Pa", "U"
-	};
-
-	return known(z) ? symbols[z - 1] : "?";
+	return bh_element_symbol(z);
 }
 
 double bh_xray_molar_mass_g(int z)

@@ -3,11 +3,11 @@
 
 #include <stdbool.h>
 
+#include "data/elements.h"
+
 /* Door to the atomic database (xraylib 4, T. Schoonjans et al., Spectrochim. Acta B 66
  * (2011) 776). Elements Z = 1 to 92; energies clamped to 0.1 to 800 keV, where every table
  * is defined. No function fails inside these limits: what is physically nothing is 0. */
-
-enum { BH_Z_MAX = 92 };
 
 /* Atomic number of a symbol ("Fe"); 0 when there is none up to Z = 92. */
 int bh_xray_z(const char *symbol);

@@ -37,7 +37,7 @@ def planes():
 def letters(hall, chosen):
     """One letter a plane: "." absent, else its multiplicity with Friedel pairs."""
     ops = gemmi.symops_from_hall(hall)
-    group = sgtbx.space_group("Hall: " + hall)
+    group = sgtbx.space_group(hall)
     text = ""
     for h in chosen:
         absent = ops.is_systematically_absent(list(h))
@@ -62,7 +62,7 @@ def write_groups(rows, chosen):
              "# . absent; 2 4 6 8, c 12, g 16, o 24, M 48: multiplicity with Friedel pairs",
              "planes\t" + " ".join("%d,%d,%d" % h for h in chosen)]
     for row, hall in rows:
-        group = sgtbx.space_group("Hall: " + hall)
+        group = sgtbx.space_group(hall)
         assert operations(hall) == operations_of(group), hall
         lines.append("%d\t%d\t%d\t%d\t%s\t%s" % (
             row, group.type().number(), group.order_z(), group.is_centric(), hall,
@@ -88,18 +88,20 @@ def write_symbols(rows, chosen):
     named = {}
     for group in gemmi.spacegroup_table():
         named.setdefault(group.xhm(), group.hall)
-        named.setdefault(group.hall, group.hall)
-        if not group.ext or group.ext == "\0":
-            named.setdefault(group.short_name(), group.hall)
+        if operations(group.hall) in by_operations:
+            named.setdefault(group.hall, group.hall)
+            if group.ext == "\0":
+                named.setdefault(group.short_name(), group.hall)
     for symbols in sgtbx.space_group_symbol_iterator():
         hall = symbols.hall().strip()
         named.setdefault(symbols.universal_hermann_mauguin().replace(" :", ":"), hall)
         named.setdefault(hall, hall)
     lines = ["# Symbols of gemmi %s and cctbx, see make_space_groups.py." % gemmi.__version__,
-             "# symbol, row with the same operations (0: none has), letters when the row is 0"]
+             "# symbol, row with the same operations; 0: no row has them, then operations, letters"]
     for symbol, hall in named.items():
         row = by_operations.get(operations(hall), 0)
-        lines.append("%s\t%d\t%s" % (symbol, row, "" if row else letters(hall, chosen)))
+        rest = "" if row else "\t%d\t%s" % (len(operations(hall)), letters(hall, chosen))
+        lines.append("%s\t%d%s" % (symbol, row, rest))
     (FOLDER / "space_group_symbols.tsv").write_text("\n".join(lines) + "\n")
 
 
