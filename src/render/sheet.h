@@ -51,6 +51,8 @@ typedef struct {
 typedef struct {
 	const char *title;
 	const char *subtitle;
+	const char *setting;   /* "Cu  40 kV  40 mA", to read at arm's length */
+	const char *time;      /* "3 h 35 min"                               */
 	bh_section *sections;
 	size_t section_count;
 } bh_sheet;
