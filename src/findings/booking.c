@@ -46,7 +46,7 @@ bool bh_find_booking(bh_findings *findings)
 		findings,
 		&(bh_finding){
 			.severity = BH_SEVERE,
-			.where = "booking",
+			.where = "",
 			.text = plan->times.total_s > room_s * 1.001
 					? bh_say(findings,
 						 "All aims would take %s; the booking has %s, less than "

@@ -54,7 +54,7 @@ static bool out_of_reach(bh_findings *findings, const bh_target_result *t)
 						 "angle reflects it.",
 						 d_A, anode->symbol, anode->ka1_A),
 			.evidence = { { "d", d_A, "Å" },
-				      { "two_theta", somewhere ? at_deg : NAN, "°" },
+				      { "two_theta", somewhere ? at_deg : (double)NAN, "°" },
 				      { "lowest", request->two_theta_min_deg, "°" },
 				      { "highest", request->two_theta_max_deg, "°" } },
 			.evidence_count = 4,

@@ -100,15 +100,15 @@ static void warning_bar(paper *p, const bh_item *i)
 /* What to set and how long, to read from a step away; the rest of the answer below. */
 static void answer(paper *p, const bh_section *s)
 {
-	bh_words big = words(p->sheet->setting, 21, true);
-	bh_words time = { p->sheet->time, 21, true, BH_AT_RIGHT, 0 };
+	bh_words big = words(p->sheet->setting, 20, true);
+	bh_words time = { p->sheet->time, 20, true, BH_AT_RIGHT, 0 };
 
 	for (size_t i = 0; i < s->item_count; i++)
 		if (s->items[i].weight > 0)
 			warning_bar(p, &s->items[i]);
 	bh_pen_fill(p->pen, (bh_box){ left, p->y, right - left, 36 }, 0.92);
-	bh_pen_words(p->pen, big, left + 10, p->y + 5, 330);
-	bh_pen_words(p->pen, time, right - 200, p->y + 5, 190);
+	bh_pen_words(p->pen, big, left + 10, p->y + 5, 350);
+	bh_pen_words(p->pen, time, right - 170, p->y + 5, 160);
 	p->y += 42;
 	for (size_t i = 0; i < s->item_count; i++)
 		if (s->items[i].weight == 0 && strcmp(s->items[i].lead, "tube") != 0)
@@ -134,7 +134,7 @@ static void figure(paper *p)
 
 typedef struct {
 	double x[MOST_COLUMNS], width[MOST_COLUMNS];
-} columns;
+} columns; /* a table has at least one column */
 
 static double natural(const paper *p, const bh_table *t, size_t column)
 {
@@ -207,10 +207,10 @@ static void cells(const paper *p, const columns *c, const bh_table *t,
 
 static void table_head(paper *p, const columns *c, const bh_table *t)
 {
-	const char *names[MOST_COLUMNS], *units[MOST_COLUMNS];
+	const char *names[MOST_COLUMNS] = { "" }, *units[MOST_COLUMNS] = { "" };
 	bool any = false;
 
-	for (size_t i = 0; i < t->column_count; i++) {
+	for (size_t i = 0; i < t->column_count && i < MOST_COLUMNS; i++) {
 		names[i] = t->columns[i].head;
 		units[i] = t->columns[i].unit;
 		any = any || *units[i];
@@ -227,7 +227,7 @@ static void table_head(paper *p, const columns *c, const bh_table *t)
 
 static void table(paper *p, const bh_table *t)
 {
-	columns c;
+	columns c = { { 0 }, { 0 } };
 
 	arrange(&c, p, t);
 	table_head(p, &c, t);
@@ -347,7 +347,7 @@ static void section(paper *p, const bh_section *s)
 	}
 	if (s->item_count == 0 && s->table.row_count == 0)
 		return;
-	heading(p, s->title, s->part == BH_PART_SIGN_OFF ? 44 : 36);
+	heading(p, s->title, s->part == BH_PART_FINDINGS ? 60 : 44);
 	if (s->table.row_count)
 		table(p, &s->table);
 	if (s->part == BH_PART_FINDINGS && p->plan->finding_count)

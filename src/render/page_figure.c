@@ -136,7 +136,7 @@ static void counts_axis(const figure *f)
 
 typedef struct {
 	double x, left, width;
-	char text[80];
+	char text[112];
 	int row;
 } label;
 

@@ -141,9 +141,14 @@ bool bh_sheet_make(bh_sheet *sheet, bh_arena *arena, const bh_plan *plan, bh_err
 	*sheet = (bh_sheet){ .title = title_of(plan) };
 	sheet->subtitle = bh_put(&b, "Scan plan for %s, %s tube", plan->instrument->name,
 				 plan->signal.setting.tube->anode->symbol);
-	sheet->setting = bh_put(&b, "%s  %s kV  %s mA", plan->signal.setting.tube->anode->symbol,
+	sheet->setting = bh_put(&b, "%s  %s kV  %s mA%s", plan->signal.setting.tube->anode->symbol,
 				bh_put_short(&b, plan->signal.setting.kV, 3),
-				bh_put_short(&b, plan->signal.setting.mA, 3));
+				bh_put_short(&b, plan->signal.setting.mA, 3),
+				plan->signal.setting.divergence_deg > 0
+					? bh_put(&b, "  slit %s°",
+						 bh_put_short(&b, plan->signal.setting.divergence_deg,
+							      3))
+					: "");
 	sheet->time = bh_put_duration(&b, plan->times.total_s);
 	bh_sheet_answer(&b);
 	bh_put_section(&b, BH_PART_PATTERN, "Pattern");

@@ -133,7 +133,9 @@ void bh_sheet_targets(bh_builder *b)
 			rate ? bh_put_fixed(b, t->overlap_price, 2) : "–",
 			counted ? bh_put_digits(b, t->expected_counts, 2) : "–",
 			counted ? bh_put_digits(b, 100 * t->predicted_error_frac, 2) : "–",
-			t->grains > 0 ? bh_put_digits(b, t->grains, 2) : "–",
+			!(t->grains > 0)  ? "–"
+			: t->grains < 1e6 ? bh_put_digits(b, t->grains, 2)
+					  : "> 10⁶",
 		};
 
 		bh_put_row(b, s, cells);

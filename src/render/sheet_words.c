@@ -18,8 +18,8 @@ void bh_sheet_findings(bh_builder *b)
 		const bh_finding *f = &plan->findings[i];
 
 		bh_put_item(b, s,
-			    (bh_item){ .lead = bh_put(b, "%s: %s, %s", words[f->severity], f->kind,
-						      f->where),
+			    (bh_item){ .lead = bh_put(b, "%s: %s%s%s", words[f->severity], f->kind,
+						      *f->where ? ", " : "", f->where),
 				       .text = f->text,
 				       .then = f->remedy,
 				       .weight = (int)f->severity });

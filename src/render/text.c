@@ -236,7 +236,7 @@ static void row(const page *p, const layout *l, const bh_table *t, const char *c
 
 static void heads(const page *p, const layout *l, const bh_table *t)
 {
-	const char *names[MOST_COLUMNS], *units[MOST_COLUMNS];
+	const char *names[MOST_COLUMNS] = { "" }, *units[MOST_COLUMNS] = { "" };
 	bool any = false;
 
 	for (size_t i = 0; i < t->column_count && i < MOST_COLUMNS; i++) {
