@@ -39,7 +39,7 @@ CORE    := $(filter-out $(BUILD)/src/cli/main.o,$(OBJ))
 SUPPORT := $(patsubst %.c,$(BUILD)/%.o,$(wildcard tests/support/*.c))
 TESTS   := $(patsubst %.c,$(BUILD)/%,$(wildcard tests/*/test_*.c))
 SCRIPTS := $(wildcard tests/*/test_*.sh)
-ifeq ($(filter -j%,$(MAKEFLAGS)),)
+ifeq ($(MAKELEVEL),0)
 MAKEFLAGS += -j$(shell nproc) --no-print-directory
 endif
 

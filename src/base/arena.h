@@ -7,8 +7,8 @@
  * address sanitizer still sees the end of each array. */
 typedef struct bh_arena bh_arena;
 
-bh_arena *bh_arena_new(void);         /* NULL when memory is out */
-void bh_arena_free(bh_arena *arena);  /* frees every block; NULL is allowed */
+bh_arena *bh_arena_new(void);	     /* NULL when memory is out */
+void bh_arena_free(bh_arena *arena); /* frees every block; NULL is allowed */
 
 /* Zeroed memory for count items of size bytes; NULL when memory is out or the product
  * overflows. count 0 gives a valid pointer that must not be read. */
@@ -24,7 +24,8 @@ char *bh_arena_format(bh_arena *arena, const char *format, ...)
 	__attribute__((format(printf, 2, 3)));
 
 #define bh_new(arena, type, count) ((type *)bh_arena_take((arena), (count), sizeof(type)))
-#define bh_grow(arena, block, type, old_count, new_count)                                  \
-	((type *)bh_arena_resize((arena), (block), (old_count), (new_count), sizeof(type)))
+#define bh_grow(arena, block, type, old_count, new_count)                                \
+	((type *)bh_arena_resize((arena), (block), (old_count), (new_count),             \
+				 sizeof(type)))
 
 #endif

@@ -91,7 +91,8 @@ const char *bh_fmt_duration(char room[BH_FMT_ROOM], double seconds)
 	if (s < 60)
 		snprintf(room, BH_FMT_ROOM, "%lld s", s);
 	else if (s < 600)
-		snprintf(room, BH_FMT_ROOM, s % 60 ? "%lld min %lld s" : "%lld min", s / 60, s % 60);
+		snprintf(room, BH_FMT_ROOM, s % 60 ? "%lld min %lld s" : "%lld min",
+			 s / 60, s % 60);
 	else if (s < 3570)
 		snprintf(room, BH_FMT_ROOM, "%lld min", (s + 30) / 60);
 	else if (s < 172800)

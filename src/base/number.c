@@ -60,7 +60,8 @@ static bool convert(double *value, const char *s, size_t n)
 
 bool bh_number_read(double *value, const char *text, size_t length)
 {
-	return length > 0 && shape(text, length) == length && convert(value, text, length);
+	return length > 0 && shape(text, length) == length &&
+	       convert(value, text, length);
 }
 
 static double unit_s(const char *s, size_t n)
@@ -93,7 +94,8 @@ bool bh_duration_read(double *seconds, const char *text, size_t length)
 		i += n;
 		while (i < length && text[i] == ' ')
 			i++;
-		while (i + word < length && text[i + word] >= 'a' && text[i + word] <= 'z')
+		while (i + word < length && text[i + word] >= 'a' &&
+		       text[i + word] <= 'z')
 			word++;
 		unit = unit_s(text + i, word);
 		if (!(unit > 0))

@@ -3,10 +3,10 @@
 
 /* Conversions stand here once. hc, N_A: exact by the SI of 2019 (CODATA 2018); r_e, m_e c²:
  * CODATA 2018, P. J. Mohr et al., Rev. Mod. Phys. 93 (2021) 025010. */
-#define BH_HC_KEV_A 12.398419843320026          /* h c, keV Å; exact         */
-#define BH_AVOGADRO_PER_MOL 6.02214076e23       /* exact                     */
-#define BH_ELECTRON_RADIUS_CM 2.8179403262e-13  /* classical, CODATA 2018    */
-#define BH_ELECTRON_REST_KEV 510.99895          /* m_e c², CODATA 2018       */
+#define BH_HC_KEV_A 12.398419843320026	       /* h c, keV Å; exact         */
+#define BH_AVOGADRO_PER_MOL 6.02214076e23      /* exact                     */
+#define BH_ELECTRON_RADIUS_CM 2.8179403262e-13 /* classical, CODATA 2018    */
+#define BH_ELECTRON_REST_KEV 510.99895	       /* m_e c², CODATA 2018       */
 #define BH_PI 3.14159265358979323846
 #define BH_CM_PER_A 1e-8
 #define BH_CM_PER_MM 0.1

@@ -7,7 +7,8 @@
 static bool draw(bh_text *bytes, const bh_plan *plan, bh_as as, const bh_options *options,
 		 bh_err *err)
 {
-	bh_look look = { bh_terminal_columns(), bh_terminal_color(options), options->why };
+	bh_look look = { bh_terminal_columns(), bh_terminal_color(options),
+			 options->why };
 
 	switch (as) {
 	case BH_AS_JSON:

@@ -8,7 +8,8 @@
 static bool draw(bh_text *bytes, const bh_plan *plan, bh_as as, const bh_options *options,
 		 bh_err *err)
 {
-	bh_look look = { bh_terminal_columns(), bh_terminal_color(options), options->why };
+	bh_look look = { bh_terminal_columns(), bh_terminal_color(options),
+			 options->why };
 
 	switch (as) {
 	case BH_AS_JSON:
@@ -36,7 +37,8 @@ static int listed(bh_arena *arena, const bh_options *options)
 			fmin(request->two_theta_max_deg, options->two_theta_deg[1]);
 		if (!(request->two_theta_min_deg < request->two_theta_max_deg)) {
 			bh_fail(&err, BH_BAD_INPUT,
-				"--two-theta %g,%g lies outside the reach of the instrument\n"
+				"--two-theta %g,%g lies outside the reach of the "
+				"instrument\n"
 				"allowed: %g to %g",
 				options->two_theta_deg[0], options->two_theta_deg[1],
 				request->instrument->two_theta_min_deg,

@@ -10,17 +10,20 @@
 
 static void print_help(void)
 {
-	printf("beamhour plans powder X-ray diffraction scans.\n\nusage: beamhour COMMAND "
+	printf("beamhour plans powder X-ray diffraction scans.\n\nusage: beamhour "
+	       "COMMAND "
 	       "[OPTION...]\n\ncommands:\n");
 	for (int i = 0; i < bh_command_count; i++) {
 		char head[40];
 
-		snprintf(head, sizeof head, "%s %s", bh_commands[i].name, bh_commands[i].arguments);
+		snprintf(head, sizeof head, "%s %s", bh_commands[i].name,
+			 bh_commands[i].arguments);
 		printf("  %-26s %s\n", head, bh_commands[i].help);
 	}
 	printf("\nREQUEST is a file, or - for standard input.\n\noptions:\n");
 	bh_options_print();
-	printf("\nexit status: 0 done; 1 done, but an aim is not met or a severe finding stands;\n"
+	printf("\nexit status: 0 done; 1 done, but an aim is not met or a severe finding "
+	       "stands;\n"
 	       "2 the input or the usage is wrong; 3 the system failed\n");
 }
 
@@ -45,7 +48,8 @@ static void find_presets(bh_options *options, char rooms[2][PATH_MAX + 40])
 			options->preset_dirs[options->preset_dir_count++] = rooms[i];
 		}
 	}
-	options->preset_dirs[options->preset_dir_count++] = BH_SHARE "/presets/instruments";
+	options->preset_dirs[options->preset_dir_count++] =
+		BH_SHARE "/presets/instruments";
 }
 
 static int usage_error(const char *word)
@@ -55,7 +59,8 @@ static int usage_error(const char *word)
 	bh_err err = { BH_OK, 0, 0, "", "", "" };
 
 	if (!word) {
-		bh_fail(&err, BH_BAD_INPUT, "no command given\nbeamhour --help lists them");
+		bh_fail(&err, BH_BAD_INPUT,
+			"no command given\nbeamhour --help lists them");
 		return bh_report(&err);
 	}
 	for (int i = 0; i < bh_command_count; i++) {
@@ -83,7 +88,8 @@ static int run(const bh_options *options)
 			continue;
 		if (options->argument_count < command->least ||
 		    options->argument_count > command->most) {
-			bh_fail(&err, BH_BAD_INPUT, "%s takes %s%s\nbeamhour %s %s", command->name,
+			bh_fail(&err, BH_BAD_INPUT, "%s takes %s%s\nbeamhour %s %s",
+				command->name,
 				command->most == 0 ? "no argument" : command->arguments,
 				command->least == 1 ? ", once" : "", command->name,
 				command->arguments);

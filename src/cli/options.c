@@ -7,8 +7,18 @@
 
 #include "base/number.h"
 
-enum { OPT_FORMAT = 256, OPT_ANODE, OPT_INSTRUMENT, OPT_WITHIN, OPT_TWO_THETA, OPT_WHY,
-       OPT_QUIET, OPT_COLOR, OPT_HELP, OPT_VERSION };
+enum {
+	OPT_FORMAT = 256,
+	OPT_ANODE,
+	OPT_INSTRUMENT,
+	OPT_WITHIN,
+	OPT_TWO_THETA,
+	OPT_WHY,
+	OPT_QUIET,
+	OPT_COLOR,
+	OPT_HELP,
+	OPT_VERSION
+};
 
 typedef struct {
 	int id;
@@ -37,8 +47,9 @@ void bh_options_print(void)
 	for (int i = 0; i < ROWS; i++) {
 		char head[40];
 
-		snprintf(head, sizeof head, "%s--%s%s%s", rows[i].id == 'o' ? "-o, " : "    ",
-			 rows[i].name, rows[i].value ? " " : "", rows[i].value ? rows[i].value : "");
+		snprintf(head, sizeof head, "%s--%s%s%s",
+			 rows[i].id == 'o' ? "-o, " : "    ", rows[i].name,
+			 rows[i].value ? " " : "", rows[i].value ? rows[i].value : "");
 		printf("  %-26s %s\n", head, rows[i].help);
 	}
 }
@@ -61,7 +72,8 @@ static bool color(bh_options *options, const char *text, bh_err *err)
 			options->color = (bh_color)i;
 			return true;
 		}
-	return bh_fail(err, BH_BAD_INPUT, "--color %s\nallowed: auto, always, never", text);
+	return bh_fail(err, BH_BAD_INPUT, "--color %s\nallowed: auto, always, never",
+		       text);
 }
 
 static bool take(bh_options *options, int id, const char *value, bh_err *err)
@@ -69,7 +81,8 @@ static bool take(bh_options *options, int id, const char *value, bh_err *err)
 	switch (id) {
 	case 'o':
 		if (options->output_count == BH_MOST_OUTPUTS)
-			return bh_fail(err, BH_BAD_INPUT, "more than %d outputs", BH_MOST_OUTPUTS);
+			return bh_fail(err, BH_BAD_INPUT, "more than %d outputs",
+				       BH_MOST_OUTPUTS);
 		options->outputs[options->output_count++] = value;
 		return true;
 	case OPT_FORMAT:
@@ -84,13 +97,15 @@ static bool take(bh_options *options, int id, const char *value, bh_err *err)
 	case OPT_WITHIN:
 		return bh_duration_read(&options->within_s, value, strlen(value)) ||
 		       bh_fail(err, BH_BAD_INPUT,
-			       "--within %s is no duration\nlike \"2 h\", \"90 min\", \"1 h 30 min\"",
+			       "--within %s is no duration\nlike \"2 h\", \"90 min\", "
+			       "\"1 h 30 min\"",
 			       value);
 	case OPT_TWO_THETA:
 		options->two_theta_given = true;
 		return number_pair(options->two_theta_deg, value) ||
 		       bh_fail(err, BH_BAD_INPUT,
-			       "--two-theta %s\nallowed: two angles, low,high, within 0 to 180",
+			       "--two-theta %s\nallowed: two angles, low,high, within 0 "
+			       "to 180",
 			       value);
 	case OPT_COLOR:
 		return color(options, value, err);
@@ -112,19 +127,21 @@ static bool take(bh_options *options, int id, const char *value, bh_err *err)
 static void fill_long(struct option longs[ROWS + 1])
 {
 	for (int i = 0; i < ROWS; i++)
-		longs[i] = (struct option){ rows[i].name,
-					    rows[i].value ? required_argument : no_argument, NULL,
-					    rows[i].id };
+		longs[i] =
+			(struct option){ rows[i].name,
+					 rows[i].value ? required_argument : no_argument,
+					 NULL, rows[i].id };
 	longs[ROWS] = (struct option){ NULL, 0, NULL, 0 };
 }
 
 static bool refuse(const char *word, int id, bh_err *err)
 {
 	if (id == ':')
-		return bh_fail(err, BH_BAD_INPUT, "%s needs a value\nbeamhour --help lists the options",
+		return bh_fail(err, BH_BAD_INPUT,
+			       "%s needs a value\nbeamhour --help lists the options",
 			       word);
-	return bh_fail(err, BH_BAD_INPUT, "unknown option %s\nbeamhour --help lists the options",
-		       word);
+	return bh_fail(err, BH_BAD_INPUT,
+		       "unknown option %s\nbeamhour --help lists the options", word);
 }
 
 bool bh_options_read(bh_options *options, int argc, char **argv, bh_err *err)
@@ -148,7 +165,8 @@ bool bh_options_read(bh_options *options, int argc, char **argv, bh_err *err)
 		else if (options->argument_count < 4)
 			options->arguments[options->argument_count++] = argv[optind];
 		else
-			return bh_fail(err, BH_BAD_INPUT, "too many arguments: %s", argv[optind]);
+			return bh_fail(err, BH_BAD_INPUT, "too many arguments: %s",
+				       argv[optind]);
 	}
 	return true;
 }

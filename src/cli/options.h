@@ -18,10 +18,10 @@ typedef struct {
 	int argument_count;
 	const char *outputs[BH_MOST_OUTPUTS];
 	size_t output_count;
-	const char *format;       /* NULL: not given      */
+	const char *format; /* NULL: not given      */
 	const char *anode, *instrument;
-	double within_s;          /* 0: not given         */
-	double two_theta_deg[2];  /* low < high, else not given */
+	double within_s;	 /* 0: not given         */
+	double two_theta_deg[2]; /* low < high, else not given */
 	bool two_theta_given;
 	bool why, quiet, help, version;
 	bh_color color;

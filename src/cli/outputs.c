@@ -44,7 +44,8 @@ static int complain(const char *what, const char *given, unsigned kinds, bool wo
 		if (kinds & 1u << i) {
 			size_t used = strlen(list);
 
-			snprintf(list + used, sizeof list - used, "%s%s", used ? ", " : "",
+			snprintf(list + used, sizeof list - used, "%s%s",
+				 used ? ", " : "",
 				 words ? kinds_of[i].word : kinds_of[i].ending);
 		}
 	bh_fail(&err, BH_BAD_INPUT, "%s %s\nallowed: %s", what, given, list);
@@ -65,8 +66,8 @@ int bh_outputs_check(const bh_options *options, unsigned kinds)
 		if (strcmp(options->outputs[i], "-") == 0)
 			continue;
 		if (as < 0 || !(kinds & 1u << as))
-			return complain("the ending says no kind of output:", options->outputs[i],
-					kinds, false);
+			return complain("the ending says no kind of output:",
+					options->outputs[i], kinds, false);
 	}
 	return BH_EXIT_DONE;
 }

@@ -5,7 +5,15 @@
 #include "model/plan.h"
 
 /* Kinds of output, by word and by the ending of a file name. */
-typedef enum { BH_AS_TEXT, BH_AS_JSON, BH_AS_CSV, BH_AS_PDF, BH_AS_SVG, BH_AS_PNG, BH_AS_COUNT } bh_as;
+typedef enum {
+	BH_AS_TEXT,
+	BH_AS_JSON,
+	BH_AS_CSV,
+	BH_AS_PDF,
+	BH_AS_SVG,
+	BH_AS_PNG,
+	BH_AS_COUNT
+} bh_as;
 
 /* What a command makes of a plan in one kind; false: err says why. */
 typedef bool (*bh_draw)(bh_text *bytes, const bh_plan *plan, bh_as as,

@@ -12,7 +12,8 @@
 int bh_report(const bh_err *err)
 {
 	if (err->line > 0)
-		fprintf(stderr, "%s:%d:%d: %s\n", err->file, err->line, err->col, err->what);
+		fprintf(stderr, "%s:%d:%d: %s\n", err->file, err->line, err->col,
+			err->what);
 	else if (*err->file)
 		fprintf(stderr, "%s: %s\n", err->file, err->what);
 	else
@@ -63,7 +64,8 @@ static int failed(const char *path, const char *what)
 {
 	bh_err err = { BH_OK, 0, 0, "", "", "" };
 
-	bh_fail(&err, BH_BAD_SYSTEM, "cannot write %s: %s (%s)", path, strerror(errno), what);
+	bh_fail(&err, BH_BAD_SYSTEM, "cannot write %s: %s (%s)", path, strerror(errno),
+		what);
 	return bh_report(&err);
 }
 

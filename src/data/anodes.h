@@ -10,7 +10,7 @@ typedef struct {
 	const char *symbol;
 	int z;
 	double ka1_A, ka2_A, kb_A; /* Kβ: the 1,3 blend for Cr to Cu, Kβ1 for Mo, Ag */
-	double ka1_fwhm_eV;        /* of the summed emission profile, for the emission width */
+	double ka1_fwhm_eV; /* of the summed emission profile, for the emission width */
 	const char *source;
 } bh_anode;
 

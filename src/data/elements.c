@@ -4,12 +4,13 @@
 
 /* IUPAC symbols, H to U. */
 static const char symbols[BH_Z_MAX][3] = {
-	"H",  "He", "Li", "Be", "B",  "C",  "N",  "O",	"F",  "Ne", "Na", "Mg", "Al", "Si",
-	"P",  "S",  "Cl", "Ar", "K",  "Ca", "Sc", "Ti", "V",  "Cr", "Mn", "Fe", "Co", "Ni",
-	"Cu", "Zn", "Ga", "Ge", "As", "Se", "Br", "Kr", "Rb", "Sr", "Y",  "Zr", "Nb", "Mo",
-	"Tc", "Ru", "Rh", "Pd", "Ag", "Cd", "In", "Sn", "Sb", "Te", "I",  "Xe", "Cs", "Ba",
-	"La", "Ce", "Pr", "Nd", "Pm", "Sm", "Eu", "Gd", "Tb", "Dy", "Ho", "Er", "Tm", "Yb",
-	"Lu", "Hf", "Ta", "W",  "Re", "Os", "Ir", "Pt", "Au", "Hg", "Tl", "Pb", "Bi", "Po",
+	"H",  "He", "Li", "Be", "B",  "C",  "N",  "O",	"F",  "Ne", "Na", "Mg",
+	"Al", "Si", "P",  "S",	"Cl", "Ar", "K",  "Ca", "Sc", "Ti", "V",  "Cr",
+	"Mn", "Fe", "Co", "Ni", "Cu", "Zn", "Ga", "Ge", "As", "Se", "Br", "Kr",
+	"Rb", "Sr", "Y",  "Zr", "Nb", "Mo", "Tc", "Ru", "Rh", "Pd", "Ag", "Cd",
+	"In", "Sn", "Sb", "Te", "I",  "Xe", "Cs", "Ba", "La", "Ce", "Pr", "Nd",
+	"Pm", "Sm", "Eu", "Gd", "Tb", "Dy", "Ho", "Er", "Tm", "Yb", "Lu", "Hf",
+	"Ta", "W",  "Re", "Os", "Ir", "Pt", "Au", "Hg", "Tl", "Pb", "Bi", "Po",
 	"At", "Rn", "Fr", "Ra", "Ac", "Th", "Pa", "U"
 };
 

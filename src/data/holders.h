@@ -6,10 +6,10 @@
 /* What a specimen lies in. Where the beam spills beside the specimen, a crystalline holder
  * shows its own lines. */
 typedef struct {
-	const char *name;         /* the word of a request file               */
-	const char *element;      /* "" : no lines (plastic, glass, oriented) */
-	const char *space_group;  /* database symbol                          */
-	double a_A;               /* cubic cell; one atom at the origin       */
+	const char *name;	 /* the word of a request file               */
+	const char *element;	 /* "" : no lines (plastic, glass, oriented) */
+	const char *space_group; /* database symbol                          */
+	double a_A;		 /* cubic cell; one atom at the origin       */
 	double b_iso_A2;
 	const char *help;
 	const char *source;

@@ -18,10 +18,10 @@ typedef struct {
 	bh_plan *plan;
 	const bh_scene *scene;
 	bh_machine machine;
-	double limits_deg[2];    /* where every point can be fully exposed      */
-	bh_view_of_line *lines;  /* one for each target                         */
-	bh_need *needs;          /* one for each aim                            */
-	double scale;            /* exposures are multiplied by it; 1, or less when
+	double limits_deg[2];	/* where every point can be fully exposed      */
+	bh_view_of_line *lines; /* one for each target                         */
+	bh_need *needs;		/* one for each aim                            */
+	double scale;		/* exposures are multiplied by it; 1, or less when
 	                          * the booking does not suffice                */
 	bh_err *err;
 } work;
@@ -40,7 +40,8 @@ static void grains_of(double grains[2], const work *w, size_t target)
 
 	for (int view = 0; view < 2; view++)
 		grains[view] = bh_grains_effective(
-			&w->plan->signal, w->scene, &w->plan->phases[w->plan->targets[target].phase],
+			&w->plan->signal, w->scene,
+			&w->plan->phases[w->plan->targets[target].phase],
 			line->multiplicity, line->ka1_deg, (bh_view)view,
 			w->plan->request->specimen.spin);
 }
@@ -101,7 +102,8 @@ static bool look_at_targets(work *w)
 static size_t target_of(const bh_plan *plan, const bh_aim *aim)
 {
 	for (size_t i = 0; i < plan->target_count; i++)
-		if (plan->targets[i].phase == aim->phase && plan->targets[i].target == aim->target)
+		if (plan->targets[i].phase == aim->phase &&
+		    plan->targets[i].target == aim->target)
 			return i;
 	return SIZE_MAX;
 }
@@ -111,8 +113,8 @@ static bool choose_step(work *w)
 	bh_plan *plan = w->plan;
 	const bh_instrument *instrument = plan->instrument;
 	double middle = (w->limits_deg[0] + w->limits_deg[1]) / 2;
-	bh_profile narrow = bh_profile_line(instrument, NULL,
-					    plan->signal.radiation.lines[0].wavelength_A, middle);
+	bh_profile narrow = bh_profile_line(
+		instrument, NULL, plan->signal.radiation.lines[0].wavelength_A, middle);
 	const char *name = "of the instrument";
 	bool position = false;
 	bh_step step;
@@ -121,17 +123,20 @@ static bool choose_step(work *w)
 		const bh_target_result *t = &plan->targets[i];
 
 		if (t->reflection == SIZE_MAX ||
-		    (strcmp(name, "of the instrument") != 0 && t->fwhm_deg >= narrow.fwhm_deg))
+		    (strcmp(name, "of the instrument") != 0 &&
+		     t->fwhm_deg >= narrow.fwhm_deg))
 			continue;
 		narrow = bh_profile_line(instrument, &plan->phases[t->phase],
-					 plan->signal.radiation.lines[0].wavelength_A, t->ka1_deg);
+					 plan->signal.radiation.lines[0].wavelength_A,
+					 t->ka1_deg);
 		name = target_name(w, t);
 		if (!name)
 			return bh_fail_memory(w->err);
 	}
 	for (size_t i = 0; i < plan->request->aim_count; i++)
 		position = position || plan->request->aims[i].position_error_deg > 0;
-	step = bh_step_choose(plan->arena, instrument, narrow.fwhm_deg, narrow.eta, name, position);
+	step = bh_step_choose(plan->arena, instrument, narrow.fwhm_deg, narrow.eta, name,
+			      position);
 	w->machine.step_deg = step.step_deg;
 	plan->step_reason = step.reason;
 	return step.reason || bh_fail_memory(w->err);
@@ -156,7 +161,8 @@ static bool find_needs(work *w)
 			continue;
 		}
 		need->target = target_of(plan, need->aim);
-		if (need->target == SIZE_MAX || plan->targets[need->target].reflection == SIZE_MAX)
+		if (need->target == SIZE_MAX ||
+		    plan->targets[need->target].reflection == SIZE_MAX)
 			continue;
 		grains_of(grains, w, need->target);
 		bh_need_line(need, &w->lines[need->target], grains, plan->instrument);
@@ -182,7 +188,8 @@ static double survey_density(const work *w, size_t skip)
 	double most = 0;
 
 	for (size_t i = 0; i < w->plan->request->aim_count; i++)
-		if (i != skip && w->needs[i].aim->kind == BH_AIM_SURVEY && w->needs[i].computed)
+		if (i != skip && w->needs[i].aim->kind == BH_AIM_SURVEY &&
+		    w->needs[i].computed)
 			most = fmax(most, w->needs[i].density_s_deg[0]);
 	return most * w->scale;
 }
@@ -194,7 +201,9 @@ static bool is_survey(const bh_range *range)
 
 static bool add_survey(work *w, bh_range *ranges, size_t *count, double density)
 {
-	bh_span all = { w->limits_deg[0], w->limits_deg[1], { density, density }, "survey" };
+	bh_span all = {
+		w->limits_deg[0], w->limits_deg[1], { density, density }, "survey"
+	};
 
 	if (density > 0)
 		ranges[(*count)++] = bh_ranges_run(&w->machine, &all);
@@ -233,8 +242,8 @@ static bool lay_ranges(work *w, bh_range *ranges, size_t *count, size_t skip)
 			span->density_s_deg[BH_VIEW_STILL] = HUGE_VAL;
 		n += span->density_s_deg[BH_VIEW_SWEEPING] > 0;
 	}
-	if (!bh_ranges_join(spans, &n, most > *count ? most - *count : 1, &w->machine, plan->arena,
-			    w->err))
+	if (!bh_ranges_join(spans, &n, most > *count ? most - *count : 1, &w->machine,
+			    plan->arena, w->err))
 		return false;
 	for (size_t i = 0; i < n; i++)
 		ranges[(*count)++] = bh_ranges_run(&w->machine, &spans[i]);
@@ -297,7 +306,8 @@ static bool scout(work *w)
 	if (tube->throughput_factor < 1.1)
 		return true;
 	for (size_t i = 0; i < plan->target_count; i++)
-		if (plan->targets[i].reflection != SIZE_MAX && w->lines[i].area_cps_deg > 0 &&
+		if (plan->targets[i].reflection != SIZE_MAX &&
+		    w->lines[i].area_cps_deg > 0 &&
 		    (!best || w->lines[i].top_cps > best->top_cps)) {
 			best = &w->lines[i];
 			name = target_name(w, &plan->targets[i]);
@@ -305,18 +315,22 @@ static bool scout(work *w)
 	if (!best || !name)
 		return !best || bh_fail_memory(w->err);
 	line_window(&span, best);
-	span.density_s_deg[0] = span.density_s_deg[1] = bh_view_density(best, 0.05 * 0.05,
-									BH_FIT_AREA);
+	span.density_s_deg[0] = span.density_s_deg[1] =
+		bh_view_density(best, 0.05 * 0.05, BH_FIT_AREA);
 	range = bh_ranges_run(&w->machine, &span);
 	plan->times.scout_s = range.wall_s;
-	counts = best->area_cps_deg * best->inside_frac * range.exposure_s / range.step_deg;
+	counts = best->area_cps_deg * best->inside_frac * range.exposure_s /
+		 range.step_deg;
 	plan->scout = bh_arena_format(
 		plan->arena,
-		"Scan %.1f to %.1f° (%s) first, %s. The plan expects %.0f net counts, summed over the "
-		"steps from %.2f to %.2f°. If you find k times as many, divide every count time of the "
+		"Scan %.1f to %.1f° (%s) first, %s. The plan expects %.0f net counts, "
+		"summed over the "
+		"steps from %.2f to %.2f°. If you find k times as many, divide every "
+		"count time of the "
 		"plan by k; below k = %.2g or above %.2g, look for the cause first.",
-		range.from_deg, range.to_deg, name, how_run(w, &range), bh_ranges_round_up(counts),
-		best->low_deg, best->high_deg, 1 / tube->throughput_factor, tube->throughput_factor);
+		range.from_deg, range.to_deg, name, how_run(w, &range),
+		bh_ranges_round_up(counts), best->low_deg, best->high_deg,
+		1 / tube->throughput_factor, tube->throughput_factor);
 	return plan->scout || bh_fail_memory(w->err);
 }
 
@@ -327,8 +341,8 @@ static bool lay_and_time(work *w)
 	if (!lay_ranges(w, plan->ranges, &plan->range_count, SIZE_MAX))
 		return false;
 	plan->times.scanning_s = scanning_s(w, plan->ranges, plan->range_count);
-	plan->times.overhead_s = overhead_s(w, plan->ranges, plan->range_count) +
-				 plan->times.scout_s;
+	plan->times.overhead_s =
+		overhead_s(w, plan->ranges, plan->range_count) + plan->times.scout_s;
 	plan->times.total_s = plan->times.scanning_s + plan->times.overhead_s;
 	return true;
 }
@@ -361,7 +375,8 @@ static bool fit_booking(work *w)
 }
 
 /* Exposure density and view that the plan's ranges give a stretch. */
-static double density_at(const bh_plan *plan, double low_deg, double high_deg, bh_view *view)
+static double density_at(const bh_plan *plan, double low_deg, double high_deg,
+			 bh_view *view)
 {
 	double sum = 0;
 
@@ -373,7 +388,8 @@ static double density_at(const bh_plan *plan, double low_deg, double high_deg, b
 		if (range->from_deg > low_deg + 1e-9 || range->to_deg < high_deg - 1e-9)
 			continue;
 		sum += range->exposure_s / range->step_deg;
-		if (range->mode == BH_MODE_STANDING && !(sum > 2 * range->exposure_s / range->step_deg))
+		if (range->mode == BH_MODE_STANDING &&
+		    !(sum > 2 * range->exposure_s / range->step_deg))
 			*view = BH_VIEW_STILL;
 	}
 	return sum;
@@ -392,12 +408,15 @@ static void result_line(work *w, bh_aim_result *result, const bh_need *need,
 	result->computed = need->computed && density > 0;
 	result->reachable = need->reachable[view];
 	result->needed_exposure_s = need->density_s_deg[view] * w->machine.step_deg;
-	result->floor = unit * sqrt(bh_need_floor_variance(line, grains[view], parameter));
+	result->floor =
+		unit * sqrt(bh_need_floor_variance(line, grains[view], parameter));
 	if (!result->computed)
 		return;
-	result->predicted = unit * bh_need_line_error(line, grains[view], density, parameter);
+	result->predicted =
+		unit * bh_need_line_error(line, grains[view], density, parameter);
 	result->expected_counts = line->area_cps_deg * line->inside_frac * density;
-	result->met = result->reachable && result->predicted <= result->wanted * (1 + 1e-6);
+	result->met =
+		result->reachable && result->predicted <= result->wanted * (1 + 1e-6);
 }
 
 static bool result_survey(work *w, bh_aim_result *result, const bh_need *need)
@@ -408,14 +427,15 @@ static bool result_survey(work *w, bh_aim_result *result, const bh_need *need)
 	for (size_t i = 0; i < plan->range_count; i++)
 		if (is_survey(&plan->ranges[i]))
 			density = plan->ranges[i].exposure_s / plan->ranges[i].step_deg;
-	if (!bh_need_survey_share(&share, plan->arena, &plan->signal, w->scene, w->limits_deg,
-				  density, w->err))
+	if (!bh_need_survey_share(&share, plan->arena, &plan->signal, w->scene,
+				  w->limits_deg, density, w->err))
 		return false;
 	result->computed = need->computed && isfinite(share);
 	result->reachable = true;
 	result->predicted = result->computed ? 100 * share : 0;
 	result->needed_exposure_s = need->density_s_deg[0] * w->machine.step_deg;
-	result->met = result->computed && result->predicted <= result->wanted * (1 + 1e-4);
+	result->met =
+		result->computed && result->predicted <= result->wanted * (1 + 1e-4);
 	return true;
 }
 
@@ -436,13 +456,16 @@ static bool price(work *w, bh_aim_result *result, size_t aim)
 	return true;
 }
 
-static bool add_result(work *w, const bh_need *need, size_t aim, bh_fit_parameter parameter)
+static bool add_result(work *w, const bh_need *need, size_t aim,
+		       bh_fit_parameter parameter)
 {
 	bh_plan *plan = w->plan;
 	bh_aim_result *result = &plan->aims[plan->aim_count++];
 	const bh_target_result *t;
 
-	*result = (bh_aim_result){ .aim = need->aim, .kind = "survey", .unit = "wt%",
+	*result = (bh_aim_result){ .aim = need->aim,
+				   .kind = "survey",
+				   .unit = "wt%",
 				   .what = "any phase, everywhere in range" };
 	if (need->aim->kind == BH_AIM_SURVEY) {
 		result->wanted = 100 * need->aim->at_frac;
@@ -476,7 +499,8 @@ static bool results(work *w)
 		if ((aim->kind == BH_AIM_SURVEY || aim->area_error_frac > 0) &&
 		    !add_result(w, &w->needs[i], i, BH_FIT_AREA))
 			return false;
-		if (aim->position_error_deg > 0 && !add_result(w, &w->needs[i], i, BH_FIT_POSITION))
+		if (aim->position_error_deg > 0 &&
+		    !add_result(w, &w->needs[i], i, BH_FIT_POSITION))
 			return false;
 	}
 	for (size_t i = 0; i < plan->target_count; i++) {
@@ -505,8 +529,9 @@ static bool results(work *w)
 static void constant_scan(work *w)
 {
 	bh_plan *plan = w->plan;
-	bh_view view = plan->instrument->detector.kind == BH_DETECTOR_STRIP ? BH_VIEW_SWEEPING
-									     : BH_VIEW_STILL;
+	bh_view view = plan->instrument->detector.kind == BH_DETECTOR_STRIP
+			       ? BH_VIEW_SWEEPING
+			       : BH_VIEW_STILL;
 	bh_span all = { w->limits_deg[0], w->limits_deg[1], { HUGE_VAL, HUGE_VAL }, "" };
 	double most = 0;
 	bh_range range;

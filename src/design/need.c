@@ -20,8 +20,8 @@ double bh_need_floor_variance(const bh_view_of_line *line, double grains,
 	return floor;
 }
 
-double bh_need_line_error(const bh_view_of_line *line, double grains, double density_s_deg,
-			  bh_fit_parameter parameter)
+double bh_need_line_error(const bh_view_of_line *line, double grains,
+			  double density_s_deg, bh_fit_parameter parameter)
 {
 	double variance = bh_view_planned_variance(line, density_s_deg, parameter);
 
@@ -98,14 +98,16 @@ static double survey_density(const bh_signal *signal, const bh_scene *scene, dou
 			     double two_theta_deg)
 {
 	bh_lit lit = bh_lit_at(scene->request, &signal->setting, two_theta_deg);
-	bh_profile profile = bh_profile_line(scene->instrument, NULL,
-					     signal->radiation.lines[0].wavelength_A,
-					     two_theta_deg);
+	bh_profile profile =
+		bh_profile_line(scene->instrument, NULL,
+				signal->radiation.lines[0].wavelength_A, two_theta_deg);
 	double width_deg = 1.5 * profile.fwhm_deg;
-	double qa = area * lit.specimen_frac * bh_profile_inside_frac(profile, width_deg / 2);
+	double qa =
+		area * lit.specimen_frac * bh_profile_inside_frac(profile, width_deg / 2);
 
 	return currie2 *
-	       (qa + width_deg * bh_observe_background_cps(signal, two_theta_deg)) / (qa * qa);
+	       (qa + width_deg * bh_observe_background_cps(signal, two_theta_deg)) /
+	       (qa * qa);
 }
 
 static double survey_worst(const bh_signal *signal, const bh_scene *scene, double area,
@@ -115,9 +117,9 @@ static double survey_worst(const bh_signal *signal, const bh_scene *scene, doubl
 
 	for (int i = 0; i <= 100; i++)
 		worst = fmax(worst, survey_density(signal, scene, area,
-						   limits_deg[0] +
-							   (limits_deg[1] - limits_deg[0]) * i /
-								   100.0));
+						   limits_deg[0] + (limits_deg[1] -
+								    limits_deg[0]) *
+									   i / 100.0));
 	return worst;
 }
 
@@ -154,7 +156,8 @@ bool bh_need_survey_share(double *share_frac, bh_arena *arena, const bh_signal *
 	while (high / low > 1 + 1e-6) {
 		double middle = sqrt(low * high);
 
-		if (survey_worst(signal, scene, area * middle, limits_deg) > density_s_deg)
+		if (survey_worst(signal, scene, area * middle, limits_deg) >
+		    density_s_deg)
 			low = middle;
 		else
 			high = middle;

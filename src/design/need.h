@@ -11,11 +11,11 @@
 /* What one aim needs of the scan. */
 typedef struct {
 	const bh_aim *aim;
-	size_t target;            /* of the plan's targets; SIZE_MAX for a survey       */
-	bool computed;            /* a rate is known and the target is in reach         */
-	bool reachable[2];        /* by counting, for each bh_view                      */
-	double density_s_deg[2];  /* aperture·s per degree, for each bh_view            */
-	double floor[2];          /* in the aim's own unit: fraction or degrees         */
+	size_t target;		 /* of the plan's targets; SIZE_MAX for a survey       */
+	bool computed;		 /* a rate is known and the target is in reach         */
+	bool reachable[2];	 /* by counting, for each bh_view                      */
+	double density_s_deg[2]; /* aperture·s per degree, for each bh_view            */
+	double floor[2];	 /* in the aim's own unit: fraction or degrees         */
 } bh_need;
 
 /* Variance that no counting time removes: grains that contribute and, for an area, the
@@ -32,8 +32,8 @@ void bh_need_line(bh_need *need, const bh_view_of_line *line, const double grain
 		  const bh_instrument *instrument);
 
 /* Error of a line aim at an exposure density: area (fraction) or position (degrees). */
-double bh_need_line_error(const bh_view_of_line *line, double grains, double density_s_deg,
-			  bh_fit_parameter parameter);
+double bh_need_line_error(const bh_view_of_line *line, double grains,
+			  double density_s_deg, bh_fit_parameter parameter);
 
 /* Need of a `survey` aim: everywhere ε ≥ 3.29² (q A + 1.5 f b)/(q A)², A the 10 % line of a
  * phase of corundum ratio 1 at the wanted share.

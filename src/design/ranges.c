@@ -40,9 +40,11 @@ double bh_ranges_scanning_s(const bh_range *range, const bh_instrument *instrume
 {
 	switch (range->mode) {
 	case BH_MODE_STEP:
-		return (double)range->steps * (range->time_per_step_s + instrument->settle_s);
+		return (double)range->steps *
+		       (range->time_per_step_s + instrument->settle_s);
 	case BH_MODE_MOVING:
-		return (range->travel_to_deg - range->travel_from_deg) / range->speed_deg_s;
+		return (range->travel_to_deg - range->travel_from_deg) /
+		       range->speed_deg_s;
 	default:
 		return range->time_per_step_s;
 	}
@@ -53,11 +55,14 @@ static void outward(bh_range *range, const bh_machine *machine, const bh_span *s
 	double low, high;
 
 	bh_ranges_limits(&low, &high, machine);
-	range->from_deg = fmax(floor(span->from_deg * 10 + 1e-6) / 10, ceil(low * 10 - 1e-6) / 10);
-	range->to_deg = fmin(ceil(span->to_deg * 10 - 1e-6) / 10, floor(high * 10 + 1e-6) / 10);
+	range->from_deg =
+		fmax(floor(span->from_deg * 10 + 1e-6) / 10, ceil(low * 10 - 1e-6) / 10);
+	range->to_deg =
+		fmin(ceil(span->to_deg * 10 - 1e-6) / 10, floor(high * 10 + 1e-6) / 10);
 	if (range->to_deg < range->from_deg)
 		range->to_deg = range->from_deg;
-	range->steps = (size_t)lround((range->to_deg - range->from_deg) / machine->step_deg) + 1;
+	range->steps =
+		(size_t)lround((range->to_deg - range->from_deg) / machine->step_deg) + 1;
 	range->step_deg = machine->step_deg;
 	range->travel_from_deg = range->from_deg;
 	range->travel_to_deg = range->to_deg;
@@ -73,14 +78,16 @@ static void run_steps(bh_range *range, const bh_instrument *instrument, double e
 }
 
 /* Every point of the range sees all channels: exposure per step N step/v. */
-static void run_moving(bh_range *range, const bh_instrument *instrument, double exposure_s)
+static void run_moving(bh_range *range, const bh_instrument *instrument,
+		       double exposure_s)
 {
 	double n = (double)instrument->detector.channels;
 	double window_deg = bh_detector_window_deg(instrument);
 	double slowest = n * range->step_deg / exposure_s;
 
 	range->mode = BH_MODE_MOVING;
-	range->speed_deg_s = bh_ranges_round_down(fmin(slowest, instrument->fastest_deg_s) * 60) / 60;
+	range->speed_deg_s =
+		bh_ranges_round_down(fmin(slowest, instrument->fastest_deg_s) * 60) / 60;
 	range->exposure_s = n * range->step_deg / range->speed_deg_s;
 	range->time_per_step_s = range->step_deg / range->speed_deg_s;
 	range->travel_from_deg -= window_deg / 2;
@@ -88,15 +95,15 @@ static void run_moving(bh_range *range, const bh_instrument *instrument, double 
 }
 
 /* The strip stands over the middle: each step of the window collects T step/p. */
-static void run_standing(bh_range *range, const bh_instrument *instrument, double exposure_s)
+static void run_standing(bh_range *range, const bh_instrument *instrument,
+			 double exposure_s)
 {
 	double pitch_deg = bh_detector_window_deg(instrument) /
 			   (double)instrument->detector.channels;
 
 	range->mode = BH_MODE_STANDING;
-	range->time_per_step_s =
-		bh_ranges_round_up(fmax(exposure_s * pitch_deg / range->step_deg,
-					instrument->shortest_step_s));
+	range->time_per_step_s = bh_ranges_round_up(fmax(
+		exposure_s * pitch_deg / range->step_deg, instrument->shortest_step_s));
 	range->exposure_s = range->time_per_step_s * range->step_deg / pitch_deg;
 	range->travel_from_deg = range->travel_to_deg =
 		(range->from_deg + range->to_deg) / 2;
@@ -116,10 +123,12 @@ bh_range bh_ranges_run(const bh_machine *machine, const bh_span *span)
 		other = range;
 		run_moving(&range, instrument,
 			   span->density_s_deg[BH_VIEW_SWEEPING] * machine->step_deg);
-		if (instrument->detector.standing && isfinite(span->density_s_deg[BH_VIEW_STILL]) &&
+		if (instrument->detector.standing &&
+		    isfinite(span->density_s_deg[BH_VIEW_STILL]) &&
 		    other.to_deg - other.from_deg <= window_deg) {
 			run_standing(&other, instrument,
-				     span->density_s_deg[BH_VIEW_STILL] * machine->step_deg);
+				     span->density_s_deg[BH_VIEW_STILL] *
+					     machine->step_deg);
 			if (bh_ranges_scanning_s(&other, instrument) <
 			    bh_ranges_scanning_s(&range, instrument))
 				range = other;
@@ -143,7 +152,8 @@ static bh_span joined(const bh_span *a, const bh_span *b)
 static void by_angle(bh_span *spans, size_t count)
 {
 	for (size_t i = 1; i < count; i++)
-		for (size_t k = i; k > 0 && spans[k].from_deg < spans[k - 1].from_deg; k--) {
+		for (size_t k = i; k > 0 && spans[k].from_deg < spans[k - 1].from_deg;
+		     k--) {
 			bh_span swap = spans[k];
 
 			spans[k] = spans[k - 1];

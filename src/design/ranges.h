@@ -12,7 +12,8 @@
 /* A stretch of 2θ and the exposure that it needs, by how the detector meets it. */
 typedef struct {
 	double from_deg, to_deg;
-	double density_s_deg[2]; /* by bh_view: aperture·s per degree; HUGE_VAL: not that way */
+	double density_s_deg
+		[2]; /* by bh_view: aperture·s per degree; HUGE_VAL: not that way */
 	const char *purpose;
 } bh_span;
 

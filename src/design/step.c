@@ -12,10 +12,12 @@ static void inform(double kept[2], bh_profile profile, double step_deg, double o
 	double background = bh_profile_height_inv_deg(profile, 0) / 5;
 
 	kept[0] = kept[1] = 0;
-	for (double x = offset_deg - ceil(reach / step_deg) * step_deg; x <= reach; x += step_deg) {
+	for (double x = offset_deg - ceil(reach / step_deg) * step_deg; x <= reach;
+	     x += step_deg) {
 		double y = bh_profile_height_inv_deg(profile, x);
 		double slope = (bh_profile_height_inv_deg(profile, x + h) -
-				bh_profile_height_inv_deg(profile, x - h)) / (2 * h);
+				bh_profile_height_inv_deg(profile, x - h)) /
+			       (2 * h);
 
 		kept[0] += y * y / (y + background) * step_deg;
 		kept[1] += slope * slope / (y + background) * step_deg;
@@ -70,8 +72,8 @@ bh_step bh_step_choose(bh_arena *arena, const bh_instrument *instrument, double 
 	}
 	chosen.step_deg = step;
 	chosen.reason = bh_arena_format(
-		arena, "narrowest line %s, FWHM %.3f°: at most a %s of it%s", line, fwhm_deg,
-		position ? "sixth, for a position," : "fifth",
+		arena, "narrowest line %s, FWHM %.3f°: at most a %s of it%s", line,
+		fwhm_deg, position ? "sixth, for a position," : "fifth",
 		strip ? "; tied to the strip's channels" : "");
 	return chosen;
 }

@@ -13,8 +13,8 @@ enum { POINTS = 240 };
 
 static const double half_window_fwhm = 1.5;
 static const double neighbour_prior_var = 0.25; /* area known to 50 %: share factor 1.5 */
-static const double neighbour_least = 1e-3;     /* of the target's area, to be looked at */
-static const double many_counts = 1e10;         /* as good as endless counting */
+static const double neighbour_least = 1e-3; /* of the target's area, to be looked at */
+static const double many_counts = 1e10;	    /* as good as endless counting */
 
 size_t bh_view_find(const bh_signal *signal, const bh_phase *phase, size_t phase_index,
 		    const bh_target *target)
@@ -44,7 +44,8 @@ static bool is_ka(const bh_signal *signal, size_t line)
 }
 
 /* Planes of the same phase at the same d share the line: they are the target too. */
-static bool is_own(const bh_view_of_line *view, const bh_signal *signal, const bh_peak *peak)
+static bool is_own(const bh_view_of_line *view, const bh_signal *signal,
+		   const bh_peak *peak)
 {
 	const bh_reflection *lead = &signal->reflections[view->reflection];
 	const bh_reflection *r = &signal->reflections[peak->reflection];
@@ -96,7 +97,8 @@ static bh_neighbour *neighbour_of(bh_view_of_line *view, size_t reflection)
 
 static double separation_fwhm(const bh_view_of_line *view, double two_theta_deg)
 {
-	return fmin(fabs(two_theta_deg - view->ka1_deg), fabs(two_theta_deg - view->ka2_deg)) /
+	return fmin(fabs(two_theta_deg - view->ka1_deg),
+		    fabs(two_theta_deg - view->ka2_deg)) /
 	       view->fwhm_deg;
 }
 
@@ -153,8 +155,8 @@ static void survey_neighbours(bh_view_of_line *view, const bh_signal *signal)
 	}
 	view->inside_frac = own / view->area_cps_deg;
 	view->purity_frac = own / (own + others);
-	view->gross_cps_deg = own + others +
-			      view->background_cps * (view->high_deg - view->low_deg);
+	view->gross_cps_deg =
+		own + others + view->background_cps * (view->high_deg - view->low_deg);
 	for (size_t i = 0; i < view->neighbour_count; i++)
 		view->neighbours[i].in_window_frac /= own + others;
 }
@@ -172,12 +174,13 @@ static void largest_first(bh_view_of_line *view)
 		}
 }
 
-static double own_curve(const bh_view_of_line *view, const bh_signal *signal, double at_deg)
+static double own_curve(const bh_view_of_line *view, const bh_signal *signal,
+			double at_deg)
 {
 	double sum = 0, reach = view->ka2_deg - view->ka1_deg + 0.01;
 
-	for (size_t i = bh_pattern_first(signal, view->ka1_deg - reach); i < signal->peak_count;
-	     i++) {
+	for (size_t i = bh_pattern_first(signal, view->ka1_deg - reach);
+	     i < signal->peak_count; i++) {
 		const bh_peak *peak = &signal->peaks[i];
 
 		if (peak->two_theta_deg > view->ka2_deg + reach)
@@ -191,20 +194,21 @@ static double own_curve(const bh_view_of_line *view, const bh_signal *signal, do
 }
 
 /* Rates of own line, each neighbour and everything, at one angle. */
-static double rates_at(double *gradient, const bh_view_of_line *view, const bh_signal *signal,
-		       double at_deg)
+static double rates_at(double *gradient, const bh_view_of_line *view,
+		       const bh_signal *signal, double at_deg)
 {
 	double h = view->fwhm_deg / 50, total;
 
 	memset(gradient, 0, sizeof *gradient * view->parameter_count);
 	gradient[AREA] = own_curve(view, signal, at_deg);
 	gradient[POSITION] = (own_curve(view, signal, at_deg - h) -
-			      own_curve(view, signal, at_deg + h)) / (2 * h);
+			      own_curve(view, signal, at_deg + h)) /
+			     (2 * h);
 	gradient[LEVEL] = view->background_cps;
 	gradient[SLOPE] = view->background_cps * (at_deg - view->ka1_deg);
 	total = gradient[AREA] + view->background_cps;
-	for (size_t i = bh_pattern_first(signal, view->fit_low_deg - 3); i < signal->peak_count;
-	     i++) {
+	for (size_t i = bh_pattern_first(signal, view->fit_low_deg - 3);
+	     i < signal->peak_count; i++) {
 		const bh_peak *peak = &signal->peaks[i];
 		double rate;
 
@@ -213,7 +217,8 @@ static double rates_at(double *gradient, const bh_view_of_line *view, const bh_s
 		if (is_own(view, signal, peak))
 			continue;
 		rate = peak->rate_cps_deg *
-		       bh_profile_height_inv_deg(shape(peak), at_deg - peak->two_theta_deg);
+		       bh_profile_height_inv_deg(shape(peak),
+						 at_deg - peak->two_theta_deg);
 		total += rate;
 		for (size_t k = 0; k < view->neighbour_count; k++)
 			if (view->neighbours[k].reflection == peak->reflection)
@@ -269,10 +274,11 @@ void bh_view_make(bh_view_of_line *view, const bh_signal *signal, const bh_scene
 	if (!(view->area_cps_deg > 0))
 		return;
 	for (int i = 0; i <= 40; i++)
-		view->top_cps = fmax(view->top_cps,
-				     own_curve(view, signal,
-					       view->ka1_deg + (view->ka2_deg - view->ka1_deg) *
-								       i / 40.0));
+		view->top_cps =
+			fmax(view->top_cps,
+			     own_curve(view, signal,
+				       view->ka1_deg + (view->ka2_deg - view->ka1_deg) *
+							       i / 40.0));
 	survey_neighbours(view, signal);
 	largest_first(view);
 	inform(view, signal);
@@ -311,8 +317,8 @@ double bh_view_net_variance(double *background_deg, const bh_view_of_line *view)
 	double peak_deg = view->high_deg - view->low_deg, net, under;
 
 	under = view->background_cps * peak_deg;
-	*background_deg = fmax(peak_deg * sqrt(under / view->gross_cps_deg),
-			       4 * view->fwhm_deg);
+	*background_deg =
+		fmax(peak_deg * sqrt(under / view->gross_cps_deg), 4 * view->fwhm_deg);
 	net = view->area_cps_deg * view->inside_frac;
 	return (view->gross_cps_deg + under * peak_deg / *background_deg) / (net * net);
 }

@@ -14,33 +14,33 @@ enum { BH_VIEW_NEIGHBOURS = 16 };
 /* Another plane's counts within the window of a target's fit. */
 typedef struct {
 	size_t reflection;
-	size_t line;              /* emission line of its peak that matters most    */
-	double two_theta_deg;     /* of that peak                                   */
-	double separation_fwhm;   /* to the nearer of the target's Kα1, Kα2         */
-	double area_cps_deg;      /* all its peaks within the fit window            */
-	double in_window_frac;    /* its share of the net counts in the line window */
+	size_t line;		/* emission line of its peak that matters most    */
+	double two_theta_deg;	/* of that peak                                   */
+	double separation_fwhm; /* to the nearer of the target's Kα1, Kα2         */
+	double area_cps_deg;	/* all its peaks within the fit window            */
+	double in_window_frac;	/* its share of the net counts in the line window */
 } bh_neighbour;
 
 /* What surrounds a target: everything its count time depends on. Counts per unit of exposure
  * density (aperture·s per degree). */
 typedef struct {
-	size_t reflection;        /* lead reflection in the signal                  */
-	double ka1_deg, ka2_deg;  /* ka2 = ka1 without a Kα2                        */
+	size_t reflection;	 /* lead reflection in the signal                  */
+	double ka1_deg, ka2_deg; /* ka2 = ka1 without a Kα2                        */
 	double fwhm_deg;
 	double low_deg, high_deg; /* line window: Kα1 − 1.5 FWHM to Kα2 + 1.5 FWHM  */
 	double fit_low_deg, fit_high_deg; /* where the fit looks                    */
-	double area_cps_deg;      /* own: Kα1 + Kα2, planes of equal d together     */
-	double inside_frac;       /* of the own area within the line window         */
-	double gross_cps_deg;     /* all counts within the line window              */
+	double area_cps_deg;  /* own: Kα1 + Kα2, planes of equal d together     */
+	double inside_frac;   /* of the own area within the line window         */
+	double gross_cps_deg; /* all counts within the line window              */
 	double background_cps;
-	double top_cps;           /* highest point of the recorded peak, net        */
-	double purity_frac;       /* own share of the net counts in the line window */
-	size_t equal_planes;      /* planes of the same phase at the same d         */
-	int multiplicity;         /* of all of them, Friedel opposites counted      */
+	double top_cps;	     /* highest point of the recorded peak, net        */
+	double purity_frac;  /* own share of the net counts in the line window */
+	size_t equal_planes; /* planes of the same phase at the same d         */
+	int multiplicity;    /* of all of them, Friedel opposites counted      */
 	bh_neighbour neighbours[BH_VIEW_NEIGHBOURS];
-	size_t neighbour_count;   /* largest first                                  */
+	size_t neighbour_count; /* largest first                                  */
 	double information[BH_CHOLESKY_MOST * BH_CHOLESKY_MOST]; /* per s/deg       */
-	size_t parameter_count;   /* area, position, level, slope, neighbours       */
+	size_t parameter_count; /* area, position, level, slope, neighbours       */
 } bh_view_of_line;
 
 /* Where a target lies in a signal: the index of its reflection, SIZE_MAX when no angle of

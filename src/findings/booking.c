@@ -21,8 +21,8 @@ static const char *bought(bh_findings *findings)
 
 		if (aim->computed)
 			text = bh_say(findings, "%s%s%s %.2g %s instead of %.2g", text,
-				      *text ? "; " : "", aim->what, aim->predicted, aim->unit,
-				      aim->wanted);
+				      *text ? "; " : "", aim->what, aim->predicted,
+				      aim->unit, aim->wanted);
 	}
 	return text;
 }
@@ -43,27 +43,32 @@ bool bh_find_booking(bh_findings *findings)
 	if (!wanted || !room || !text || !total)
 		return bh_fail_memory(findings->err);
 	return bh_findings_add(
-		findings,
-		&(bh_finding){
-			.severity = BH_SEVERE,
-			.where = "",
-			.text = plan->times.total_s > room_s * 1.001
-					? bh_say(findings,
-						 "All aims would take %s; the booking has %s, less than "
-						 "warm-up, checks and driving alone (%s).",
-						 wanted, room, total)
-					: bh_say(findings,
-						 "All aims would take %s; the booking has %s. Every count "
-						 "time is cut by the same factor. That buys: %s.",
-						 wanted, room, text),
-			.evidence = { { "wanted", plan->wanted_total_s, "s" },
-				      { "booked", booking->longest_s, "s" },
-				      { "reserve", booking->reserve_frac, "" },
-				      { "planned", plan->times.total_s, "s" } },
-			.evidence_count = 4,
-			.remedy = bh_say(findings,
-					 "Book %s, or drop the dearest aim (see its price), or allow "
-					 "larger errors: twice the error is a quarter of the time.",
-					 wanted),
-		});
+		findings, &(bh_finding){
+				  .severity = BH_SEVERE,
+				  .where = "",
+				  .text = plan->times.total_s > room_s * 1.001
+						  ? bh_say(findings,
+							   "All aims would take %s; the "
+							   "booking has %s, less than "
+							   "warm-up, checks and driving "
+							   "alone (%s).",
+							   wanted, room, total)
+						  : bh_say(findings,
+							   "All aims would take %s; the "
+							   "booking has %s. Every count "
+							   "time is cut by the same "
+							   "factor. That buys: %s.",
+							   wanted, room, text),
+				  .evidence = { { "wanted", plan->wanted_total_s, "s" },
+						{ "booked", booking->longest_s, "s" },
+						{ "reserve", booking->reserve_frac, "" },
+						{ "planned", plan->times.total_s, "s" } },
+				  .evidence_count = 4,
+				  .remedy = bh_say(findings,
+						   "Book %s, or drop the dearest aim "
+						   "(see its price), or allow "
+						   "larger errors: twice the error is a "
+						   "quarter of the time.",
+						   wanted),
+			  });
 }

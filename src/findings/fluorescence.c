@@ -7,7 +7,7 @@
 #include "physics/xray.h"
 
 static const double least_of_background = 0.1; /* an element's share to be named      */
-static const double least_cost = 1.15;         /* factor in time to be worth a caution */
+static const double least_cost = 1.15;	       /* factor in time to be worth a caution */
 
 /* One element's fluorescence, all lines and exciters, and its strongest exciter. */
 typedef struct {
@@ -47,7 +47,8 @@ static double total_cps(const bh_signal *signal)
 }
 
 /* Factor in exposure that a share of the background costs a target. */
-static double cost_of(const bh_findings *findings, const bh_target_result *t, double take_cps)
+static double cost_of(const bh_findings *findings, const bh_target_result *t,
+		      double take_cps)
 {
 	bh_view_of_line line;
 	double with, without, background_deg;
@@ -63,7 +64,7 @@ static double cost_of(const bh_findings *findings, const bh_target_result *t, do
 
 typedef struct {
 	const char *text; /* "another anode: Co" */
-	double gain;      /* factor in time for the target, 0: none */
+	double gain;	  /* factor in time for the target, 0: none */
 } cure;
 
 /* What the same target costs in another setting, of the same instrument. */
@@ -114,8 +115,8 @@ static bool try_anodes(bh_findings *findings, const bh_target_result *t, cure *b
 
 		if (tube != plan->signal.setting.tube &&
 		    !keep_if_better(findings, t, &setting,
-				    bh_say(findings, "the %s tube at %.0f kV", tube->anode->symbol,
-					   tube->kV),
+				    bh_say(findings, "the %s tube at %.0f kV",
+					   tube->anode->symbol, tube->kV),
 				    best))
 			return false;
 	}
@@ -133,7 +134,8 @@ static bool try_windows(bh_findings *findings, const bh_target_result *t, cure *
 		setting.window_low_keV = ka_keV * percent / 100;
 		if (setting.window_low_keV > now->window_low_keV &&
 		    !keep_if_better(findings, t, &setting,
-				    bh_say(findings, "the detector's lower level at %.2f keV",
+				    bh_say(findings,
+					   "the detector's lower level at %.2f keV",
 					   setting.window_low_keV),
 				    best))
 			return false;
@@ -141,7 +143,8 @@ static bool try_windows(bh_findings *findings, const bh_target_result *t, cure *
 	return true;
 }
 
-static bool try_voltage(bh_findings *findings, const bh_target_result *t, int z, cure *best)
+static bool try_voltage(bh_findings *findings, const bh_target_result *t, int z,
+			cure *best)
 {
 	const bh_setting *now = &findings->plan->signal.setting;
 	double edge_keV = bh_xray_edge_keV(z, BH_SHELL_K);
@@ -152,10 +155,11 @@ static bool try_voltage(bh_findings *findings, const bh_target_result *t, int z,
 
 		setting.kV = kV;
 		setting.mA = fmin(now->tube->most_mA, now->tube->most_W / kV);
-		if (!keep_if_better(findings, t, &setting,
-				    bh_say(findings, "%.0f kV and %.0f mA%s", kV, setting.mA,
-					   kV < edge_keV ? ", below the element's edge" : ""),
-				    best))
+		if (!keep_if_better(
+			    findings, t, &setting,
+			    bh_say(findings, "%.0f kV and %.0f mA%s", kV, setting.mA,
+				   kV < edge_keV ? ", below the element's edge" : ""),
+			    best))
 			return false;
 	}
 	return true;
@@ -178,7 +182,9 @@ static const char *listed(bh_findings *findings, const cure *cures, size_t count
 /* "Cu Kα1" of a line's name. */
 static const char *exciter(bh_findings *findings, const char *name)
 {
-	static const char *const words[][2] = { { "Ka1", "Kα1" }, { "Ka2", "Kα2" }, { "Kb", "Kβ" } };
+	static const char *const words[][2] = { { "Ka1", "Kα1" },
+						{ "Ka2", "Kα2" },
+						{ "Kb", "Kβ" } };
 	const char *anode = findings->plan->signal.setting.tube->anode->symbol;
 
 	if (strcmp(name, "continuum") == 0)
@@ -204,17 +210,23 @@ static bool report(bh_findings *findings, const bh_target_result *t, emitter e)
 	return bh_findings_add(
 		findings,
 		&(bh_finding){
-			.severity = cost > 5 ? BH_SEVERE : cost > least_cost ? BH_CAUTION : BH_NOTE,
+			.severity = cost > 5		? BH_SEVERE
+				    : cost > least_cost ? BH_CAUTION
+							: BH_NOTE,
 			.where = bh_findings_target(findings, t),
 			.text = bh_say(findings,
-				       "%s fluoresces, excited mostly by %s: %.3g counts/s in one "
-				       "aperture beside a peak of %.3g. It costs this line a factor "
+				       "%s fluoresces, excited mostly by %s: %.3g "
+				       "counts/s in one "
+				       "aperture beside a peak of %.3g. It costs this "
+				       "line a factor "
 				       "%.2g in count time.",
-				       bh_xray_symbol(e.z), by_continuum, at_target, peak_cps, cost),
+				       bh_xray_symbol(e.z), by_continuum, at_target,
+				       peak_cps, cost),
 			.evidence = { { "element", e.z, "Z" },
-				      { "energy", bh_xray_group_keV(e.z, strcmp(e.line, "Ka") == 0
-									      ? BH_FL_KA
-									      : BH_FL_LA),
+				      { "energy",
+					bh_xray_group_keV(e.z, strcmp(e.line, "Ka") == 0
+								       ? BH_FL_KA
+								       : BH_FL_LA),
 					"keV" },
 				      { "rate", e.rate_cps, "counts/s" },
 				      { "peak", peak_cps, "counts/s" },

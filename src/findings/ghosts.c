@@ -58,7 +58,9 @@ static size_t strongest(ghost best[GHOSTS], const bh_plan *plan, int kind)
 		g = measure(plan, peak);
 		if (!(g.counts > 3.29 * g.noise)) /* Currie 1968: seen with confidence */
 			continue;
-		for (at = count; at > 0 && g.counts / g.noise > best[at - 1].counts / best[at - 1].noise;
+		for (at = count;
+		     at > 0 &&
+		     g.counts / g.noise > best[at - 1].counts / best[at - 1].noise;
 		     at--)
 			if (at < GHOSTS)
 				best[at] = best[at - 1];
@@ -76,14 +78,17 @@ static const char *remedy(bh_findings *findings, int kind, double excess)
 	int z = tube->foil_z ? tube->foil_z : bh_filter_element(tube->anode);
 
 	if (kind == BH_W_LA1)
-		return "An aged tube: tell the lab; a diffracted-beam crystal or a narrow detector "
+		return "An aged tube: tell the lab; a diffracted-beam crystal or a "
+		       "narrow detector "
 		       "window removes it.";
 	if (tube->monochromator.two_theta_deg > 0 || !z)
 		return "Do not take it for a phase.";
 	return bh_say(findings,
-		      "Do not take it for a phase. %.0f µm more %s foil would bring it below the "
+		      "Do not take it for a phase. %.0f µm more %s foil would bring it "
+		      "below the "
 		      "noise.",
-		      ceil(bh_filter_thickness_um(tube->anode, z, excess, 1)), bh_xray_symbol(z));
+		      ceil(bh_filter_thickness_um(tube->anode, z, excess, 1)),
+		      bh_xray_symbol(z));
 }
 
 static bool report(bh_findings *findings, int kind, const char *word)
@@ -95,7 +100,8 @@ static bool report(bh_findings *findings, int kind, const char *word)
 	if (count == 0)
 		return true;
 	for (size_t i = 0; i < count && text; i++)
-		text = bh_say(findings, "%s%s%s at %.2f° (%.2g counts, %.2g times the noise)", text,
+		text = bh_say(findings,
+			      "%s%s%s at %.2f° (%.2g counts, %.2g times the noise)", text,
 			      i ? ", " : "",
 			      bh_findings_plane(findings, best[i].peak->reflection),
 			      best[i].peak->two_theta_deg, best[i].counts,
@@ -106,22 +112,26 @@ static bool report(bh_findings *findings, int kind, const char *word)
 				      .severity = BH_NOTE,
 				      .where = word,
 				      .text = bh_say(findings,
-						     "%s shows as small extra lines in the planned "
+						     "%s shows as small extra lines in "
+						     "the planned "
 						     "ranges: %s.",
 						     word, text),
 				      .evidence = { { "kbeta_ratio",
-						      findings->plan->signal.radiation.kbeta_ratio,
+						      findings->plan->signal.radiation
+							      .kbeta_ratio,
 						      "" },
 						    { "counts", best[0].counts, "" },
 						    { "noise", best[0].noise, "" } },
 				      .evidence_count = 3,
 				      .remedy = remedy(findings, kind,
-						       best[0].counts / (3.29 * best[0].noise)),
+						       best[0].counts /
+							       (3.29 * best[0].noise)),
 			      })
 		    : bh_fail_memory(findings->err);
 }
 
 bool bh_find_ghosts(bh_findings *findings)
 {
-	return report(findings, BH_KB, "Kβ") && report(findings, BH_W_LA1, "Tungsten Lα1");
+	return report(findings, BH_KB, "Kβ") &&
+	       report(findings, BH_W_LA1, "Tungsten Lα1");
 }

@@ -30,19 +30,21 @@ static const char *remedy(bh_findings *findings, const bh_target_result *t, doub
 	const bh_specimen *specimen = &plan->request->specimen;
 	const bh_phase *phase = &plan->phases[t->phase];
 	/* the multiplicity falls out of the ratio */
-	double still = bh_grains_effective(&plan->signal, findings->scene, phase, 1, t->ka1_deg,
-					   BH_VIEW_STILL, false);
-	double spun = bh_grains_effective(&plan->signal, findings->scene, phase, 1, t->ka1_deg,
-					  BH_VIEW_STILL, true);
+	double still = bh_grains_effective(&plan->signal, findings->scene, phase, 1,
+					   t->ka1_deg, BH_VIEW_STILL, false);
+	double spun = bh_grains_effective(&plan->signal, findings->scene, phase, 1,
+					  t->ka1_deg, BH_VIEW_STILL, true);
 	/* half the wanted error: the rest is left to counting */
 	double fine_um = specimen->grain_um * cbrt(t->grains * wanted * wanted / 4);
 
 	*gain = specimen->spin || !(still > 0) ? 0 : spun / still;
 	if (*gain > 1.2)
 		return bh_say(findings,
-			      "Spin the specimen: %.2g times as many grains. Or grind to %.2g µm.",
+			      "Spin the specimen: %.2g times as many grains. Or grind to "
+			      "%.2g µm.",
 			      *gain, fine_um);
-	return bh_say(findings, "Grind to %.2g µm (N grows as 1/size³), or refill and repeat.",
+	return bh_say(findings,
+		      "Grind to %.2g µm (N grows as 1/size³), or refill and repeat.",
 		      fine_um);
 }
 
@@ -57,15 +59,18 @@ static bool report(bh_findings *findings, const bh_target_result *t, double want
 		&(bh_finding){
 			.severity = reachable ? BH_CAUTION : BH_SEVERE,
 			.where = bh_findings_target(findings, t),
-			.text = bh_say(findings,
-				       "About %.2g grains of %.3g µm contribute: their chance "
-				       "orientation alone makes the area uncertain by %.2g %%, %s the "
-				       "%.2g %% asked for.%s",
-				       t->grains, findings->plan->request->specimen.grain_um,
-				       100 * t->grain_error_frac,
-				       t->grain_error_frac > wanted ? "more than" : "a large part of",
-				       100 * wanted,
-				       reachable ? "" : " No count time reaches that."),
+			.text = bh_say(
+				findings,
+				"About %.2g grains of %.3g µm contribute: their chance "
+				"orientation alone makes the area uncertain by %.2g %%, "
+				"%s the "
+				"%.2g %% asked for.%s",
+				t->grains, findings->plan->request->specimen.grain_um,
+				100 * t->grain_error_frac,
+				t->grain_error_frac > wanted ? "more than"
+							     : "a large part of",
+				100 * wanted,
+				reachable ? "" : " No count time reaches that."),
 			.evidence = { { "grains", t->grains, "" },
 				      { "grain_error", t->grain_error_frac, "" },
 				      { "wanted", wanted, "" } },

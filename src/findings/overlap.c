@@ -7,15 +7,15 @@
 /* Ranges of separation in FWHM: below the first two lines have one top, above the second each
  * has its own foot. Common practice. */
 static const double merged_fwhm = 0.5, resolved_fwhm = 1.5;
-static const double least_share = 0.01;  /* of the counts in the line's window */
-static const double least_price = 1.1;   /* of the variance                    */
+static const double least_share = 0.01;	 /* of the counts in the line's window */
+static const double least_price = 1.1;	 /* of the variance                    */
 static const double share_unknown = 0.5; /* a neighbour's area is known to 50 % */
 
 static const char *state(double separation_fwhm)
 {
-	return separation_fwhm < merged_fwhm	  ? "merged"
+	return separation_fwhm < merged_fwhm	 ? "merged"
 	       : separation_fwhm < resolved_fwhm ? "shoulder"
-						  : "resolved";
+						 : "resolved";
 }
 
 static const char *line_word(const bh_plan *plan, size_t line)
@@ -78,8 +78,10 @@ static const char *others(bh_findings *findings, const bh_view_of_line *line,
 	for (size_t i = 0; i < line->neighbour_count && text && named < 3; i++)
 		if (&line->neighbours[i] != worst &&
 		    line->neighbours[i].in_window_frac > least_share && ++named)
-			text = bh_say(findings, "%s%s%s%s %.1f %%", text, *text ? ", " : " Also ",
-				      bh_findings_plane(findings, line->neighbours[i].reflection),
+			text = bh_say(findings, "%s%s%s%s %.1f %%", text,
+				      *text ? ", " : " Also ",
+				      bh_findings_plane(findings,
+							line->neighbours[i].reflection),
 				      line_word(findings->plan, line->neighbours[i].line),
 				      100 * line->neighbours[i].in_window_frac);
 	return text && *text ? bh_say(findings, "%s.", text) : text;
@@ -110,12 +112,14 @@ static bool report(bh_findings *findings, const bh_target_result *t,
 	    !better_plane(findings, t, density, &better, &gain))
 		return false;
 	if (better && gain > 1.2)
-		remedy = bh_say(findings,
-				"Measure %s instead: the same error in 1/%.2g of the exposure.",
-				better, gain);
+		remedy = bh_say(
+			findings,
+			"Measure %s instead: the same error in 1/%.2g of the exposure.",
+			better, gain);
 	else
 		remedy = limit > 0.01
-				 ? "No plane of this phase is freer: fit the whole group, and pin "
+				 ? "No plane of this phase is freer: fit the whole "
+				   "group, and pin "
 				   "the neighbour's share by a line of its own."
 				 : "Fit both lines; the plan's count time pays for it.";
 	return bh_findings_add(
@@ -125,15 +129,18 @@ static bool report(bh_findings *findings, const bh_target_result *t,
 			.where = bh_findings_target(findings, t),
 			.text = bh_say(
 				findings,
-				"%s%s at %.3f° is %.2f FWHM away (%s) and gives %.2g %% of the net "
-				"counts in the window; fitting the neighbours costs a factor %.2f in "
+				"%s%s at %.3f° is %.2f FWHM away (%s) and gives %.2g %% "
+				"of the net "
+				"counts in the window; fitting the neighbours costs a "
+				"factor %.2f in "
 				"count time%s.%s",
 				bh_findings_plane(findings, n->reflection),
 				line_word(findings->plan, n->line), n->two_theta_deg,
 				n->separation_fwhm, state(n->separation_fwhm),
 				100 * n->in_window_frac, t->overlap_price,
 				limit > 0.005
-					? bh_say(findings, " and leaves %.1f %% whatever the time",
+					? bh_say(findings,
+						 " and leaves %.1f %% whatever the time",
 						 100 * limit)
 					: "",
 				more),
@@ -153,17 +160,19 @@ static bool equal_planes(bh_findings *findings, const bh_target_result *t,
 			 const bh_view_of_line *line)
 {
 	return bh_findings_add(
-		findings, &(bh_finding){
-				  .severity = BH_NOTE,
-				  .where = bh_findings_target(findings, t),
-				  .text = bh_say(findings,
-						 "%zu planes of this phase share this line exactly; the "
-						 "plan counts them as one.",
-						 line->equal_planes),
-				  .evidence = { { "planes", (double)line->equal_planes, "" } },
-				  .evidence_count = 1,
-				  .remedy = "",
-			  });
+		findings,
+		&(bh_finding){
+			.severity = BH_NOTE,
+			.where = bh_findings_target(findings, t),
+			.text = bh_say(
+				findings,
+				"%zu planes of this phase share this line exactly; the "
+				"plan counts them as one.",
+				line->equal_planes),
+			.evidence = { { "planes", (double)line->equal_planes, "" } },
+			.evidence_count = 1,
+			.remedy = "",
+		});
 }
 
 bool bh_find_overlap(bh_findings *findings)
@@ -179,10 +188,12 @@ bool bh_find_overlap(bh_findings *findings)
 			continue;
 		bh_view_make(&line, &plan->signal, findings->scene, t->reflection);
 		for (size_t k = 0; k < line.neighbour_count; k++)
-			if (!worst || line.neighbours[k].in_window_frac > worst->in_window_frac)
+			if (!worst ||
+			    line.neighbours[k].in_window_frac > worst->in_window_frac)
 				worst = &line.neighbours[k];
 		if (worst &&
-		    (worst->in_window_frac > least_share || t->overlap_price > least_price) &&
+		    (worst->in_window_frac > least_share ||
+		     t->overlap_price > least_price) &&
 		    !report(findings, t, &line, worst))
 			return false;
 		if (line.equal_planes > 1 && !equal_planes(findings, t, &line))

@@ -18,7 +18,8 @@ static const char *anodes_for(bh_findings *findings, double d_A)
 
 		if (request->anodes[i] != used->anode &&
 		    bh_bragg_two_theta_deg(&at_deg, d_A, request->anodes[i]->ka1_A) &&
-		    at_deg >= request->two_theta_min_deg && at_deg <= request->two_theta_max_deg)
+		    at_deg >= request->two_theta_min_deg &&
+		    at_deg <= request->two_theta_max_deg)
 			list = bh_say(findings, "%s%s%s (%.2f°)", list, *list ? ", " : "",
 				      request->anodes[i]->symbol, at_deg);
 	}
@@ -42,24 +43,27 @@ static bool out_of_reach(bh_findings *findings, const bh_target_result *t)
 		&(bh_finding){
 			.severity = bh_findings_wanted(plan, t) ? BH_SEVERE : BH_CAUTION,
 			.where = name,
-			.text = somewhere
-					? bh_say(findings,
-						 "d = %.4f Å reflects %s Kα1 at %.2f°, outside %.4g to "
-						 "%.4g°.",
-						 d_A, anode->symbol, at_deg,
-						 request->two_theta_min_deg,
-						 request->two_theta_max_deg)
-					: bh_say(findings,
-						 "d = %.4f Å is less than half of %s Kα1 (%.4f Å): no "
-						 "angle reflects it.",
-						 d_A, anode->symbol, anode->ka1_A),
+			.text = somewhere ? bh_say(findings,
+						   "d = %.4f Å reflects %s Kα1 at %.2f°, "
+						   "outside %.4g to "
+						   "%.4g°.",
+						   d_A, anode->symbol, at_deg,
+						   request->two_theta_min_deg,
+						   request->two_theta_max_deg)
+					  : bh_say(findings,
+						   "d = %.4f Å is less than half of %s "
+						   "Kα1 (%.4f Å): no "
+						   "angle reflects it.",
+						   d_A, anode->symbol, anode->ka1_A),
 			.evidence = { { "d", d_A, "Å" },
-				      { "two_theta", somewhere ? at_deg : (double)NAN, "°" },
+				      { "two_theta", somewhere ? at_deg : (double)NAN,
+					"°" },
 				      { "lowest", request->two_theta_min_deg, "°" },
 				      { "highest", request->two_theta_max_deg, "°" } },
 			.evidence_count = 4,
 			.remedy = *others ? bh_say(findings, "In range with %s.", others)
-					  : "No anode on offer brings it in: ask for another plane "
+					  : "No anode on offer brings it in: ask for "
+					    "another plane "
 					    "of this phase.",
 		});
 }
@@ -87,15 +91,18 @@ static bool cut(bh_findings *findings, const bh_target_result *t)
 			.severity = BH_CAUTION,
 			.where = bh_findings_target(findings, t),
 			.text = bh_say(findings,
-				       "Its window %.2f to %.2f° runs beyond %.2f to %.2f°, where "
-				       "every point can be exposed fully: one side has little or no "
+				       "Its window %.2f to %.2f° runs beyond %.2f to "
+				       "%.2f°, where "
+				       "every point can be exposed fully: one side has "
+				       "little or no "
 				       "background.",
 				       t->ka1_deg - width, last + width, low, high),
 			.evidence = { { "two_theta", t->ka1_deg, "°" },
 				      { "lowest_full", low, "°" },
 				      { "highest_full", high, "°" } },
 			.evidence_count = 3,
-			.remedy = "Widen the limits if the machine allows, or measure another "
+			.remedy = "Widen the limits if the machine allows, or measure "
+				  "another "
 				  "plane.",
 		});
 }
@@ -107,7 +114,8 @@ bool bh_find_range(bh_findings *findings)
 	for (size_t i = 0; i < plan->target_count; i++) {
 		const bh_target_result *t = &plan->targets[i];
 
-		if (!(t->reflection == SIZE_MAX ? out_of_reach(findings, t) : cut(findings, t)))
+		if (!(t->reflection == SIZE_MAX ? out_of_reach(findings, t)
+						: cut(findings, t)))
 			return false;
 	}
 	return true;

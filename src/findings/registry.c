@@ -41,8 +41,8 @@ bool bh_findings_add(bh_findings *findings, const bh_finding *finding)
 static void severe_first(bh_plan *plan)
 {
 	for (size_t i = 1; i < plan->finding_count; i++)
-		for (size_t k = i; k > 0 && plan->findings[k].severity >
-						    plan->findings[k - 1].severity;
+		for (size_t k = i;
+		     k > 0 && plan->findings[k].severity > plan->findings[k - 1].severity;
 		     k--) {
 			bh_finding swap = plan->findings[k];
 
@@ -71,7 +71,8 @@ const char *bh_findings_target(bh_findings *findings, const bh_target_result *ta
 {
 	const bh_phase *phase = &findings->plan->phases[target->phase];
 
-	return bh_say(findings, "%s %s", phase->name, phase->targets[target->target].text);
+	return bh_say(findings, "%s %s", phase->name,
+		      phase->targets[target->target].text);
 }
 
 const char *bh_findings_plane(bh_findings *findings, size_t reflection)

@@ -21,11 +21,11 @@ typedef struct {
 enum { BH_SYMBOL_ROOM = 48 };
 
 typedef struct {
-	int number;                     /* 1..230                                   */
-	int hall_number;                /* 1..530, row of the database; 0 beyond it  */
-	char symbol[BH_SYMBOL_ROOM];    /* Hermann-Mauguin of this setting          */
-	char hall[BH_SYMBOL_ROOM];      /* Hall symbol                              */
-	char choice[8];                 /* "1", "2", "H", "R", "b1", ...; "" if one */
+	int number;		     /* 1..230                                   */
+	int hall_number;	     /* 1..530, row of the database; 0 beyond it  */
+	char symbol[BH_SYMBOL_ROOM]; /* Hermann-Mauguin of this setting          */
+	char hall[BH_SYMBOL_ROOM];   /* Hall symbol                              */
+	char choice[8];		     /* "1", "2", "H", "R", "b1", ...; "" if one */
 	bh_symop *ops;
 	size_t op_count;
 	bool centrosymmetric;
@@ -33,12 +33,12 @@ typedef struct {
 
 typedef struct {
 	char label[32];
-	int z;                  /* atomic number                           */
-	double at[3];           /* fractional                              */
-	double occupancy;       /* (0, 1]                                  */
-	double b_iso_A2;        /* displacement parameter B                */
-	bool b_known;           /* false: the default stands in b_iso_A2   */
-	int multiplicity;       /* images in the cell; set when resolved   */
+	int z;		  /* atomic number                           */
+	double at[3];	  /* fractional                              */
+	double occupancy; /* (0, 1]                                  */
+	double b_iso_A2;  /* displacement parameter B                */
+	bool b_known;	  /* false: the default stands in b_iso_A2   */
+	int multiplicity; /* images in the cell; set when resolved   */
 	bh_place place;
 } bh_site;
 
@@ -50,19 +50,19 @@ typedef struct {
 
 typedef struct {
 	bh_element_share *elements; /* sorted by Z, no doubles */
-	size_t count;               /* 0: not known            */
+	size_t count;		    /* 0: not known            */
 } bh_composition;
 
 typedef enum {
-	BH_PHASE_ATOMS,     /* cell, group and sites: positions and rates    */
+	BH_PHASE_ATOMS,	    /* cell, group and sites: positions and rates    */
 	BH_PHASE_POSITIONS, /* cell and group only: positions                */
-	BH_PHASE_LIST       /* a list of d; rates when a corundum ratio says */
+	BH_PHASE_LIST	    /* a list of d; rates when a corundum ratio says */
 } bh_phase_kind;
 
 typedef struct {
-	char text[40];    /* as written                                   */
-	int h[3];         /* of a plane; 0 0 0 for a phase given as a list */
-	double d_A;       /* resolved                                     */
+	char text[40]; /* as written                                   */
+	int h[3];      /* of a plane; 0 0 0 for a phase given as a list */
+	double d_A;    /* resolved                                     */
 	bh_place place;
 } bh_target;
 
@@ -71,20 +71,20 @@ typedef struct {
 	bh_phase_kind kind;
 	bh_place place;
 
-	bh_cell cell;            /* not for a list */
-	bh_space_group group;    /* not for a list */
+	bh_cell cell;	      /* not for a list */
+	bh_space_group group; /* not for a list */
 	bh_site *sites;
 	size_t site_count;
 
-	double *list_d_A;        /* a list, strongest or as written  */
-	double *list_intensity;  /* as many; any scale               */
+	double *list_d_A;	/* a list, strongest or as written  */
+	double *list_intensity; /* as many; any scale               */
 	size_t list_count;
-	double corundum_ratio;   /* I/I_c; 0: not known              */
+	double corundum_ratio; /* I/I_c; 0: not known              */
 
-	double share_frac;       /* of the whole specimen, by weight, resolved */
-	double size_nm;          /* crystallite size; 0: no broadening         */
-	double strain;           /* ε of 4 ε tanθ                               */
-	double march;            /* March-Dollase r; 1: random                  */
+	double share_frac; /* of the whole specimen, by weight, resolved */
+	double size_nm;	   /* crystallite size; 0: no broadening         */
+	double strain;	   /* ε of 4 ε tanθ                               */
+	double march;	   /* March-Dollase r; 1: random                  */
 	int march_axis[3];
 	bh_target *targets;
 	size_t target_count;
@@ -92,9 +92,9 @@ typedef struct {
 	/* resolved at reading */
 	bh_composition composition;
 	char formula[64];
-	double density_g_cm3;    /* X-ray density, or as stated; 0: not known */
-	double volume_A3;        /* 0 for a list                              */
-	double formula_units;    /* formulas in the cell; 0: not known        */
+	double density_g_cm3; /* X-ray density, or as stated; 0: not known */
+	double volume_A3;     /* 0 for a list                              */
+	double formula_units; /* formulas in the cell; 0: not known        */
 } bh_phase;
 
 #endif

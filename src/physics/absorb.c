@@ -59,10 +59,9 @@ bool bh_absorb_mix(bh_composition *mixture, bh_arena *arena, const bh_mix_part *
 		const bh_composition *part = parts[i].composition;
 
 		for (size_t k = 0; parts[i].share_frac > 0 && k < part->count; k++)
-			elements[n++] = (bh_element_share){
-				part->elements[k].z,
-				part->elements[k].mass_frac * parts[i].share_frac
-			};
+			elements[n++] = (bh_element_share){ part->elements[k].z,
+							    part->elements[k].mass_frac *
+								    parts[i].share_frac };
 	}
 	*mixture = (bh_composition){ elements, n };
 	bh_formula_normalise(mixture);

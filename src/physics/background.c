@@ -18,11 +18,13 @@ double bh_background_fluorescence_cps(const bh_composition *composition, size_t 
 	if (!(sigma_cm2_g > 0) || !(out_keV > 0))
 		return 0;
 	return flux_s * solid_angle_sr / (4 * BH_PI) * e->mass_frac * sigma_cm2_g /
-	       (bh_absorb_cm2_g(composition, energy_keV) + bh_absorb_cm2_g(composition, out_keV));
+	       (bh_absorb_cm2_g(composition, energy_keV) +
+		bh_absorb_cm2_g(composition, out_keV));
 }
 
 double bh_background_compton_cps(const bh_composition *composition, double energy_keV,
-				 double flux_s, double solid_angle_sr, double two_theta_rad)
+				 double flux_s, double solid_angle_sr,
+				 double two_theta_rad)
 {
 	double out_keV = bh_xray_compton_keV(energy_keV, two_theta_rad), dcs = 0;
 
@@ -31,7 +33,8 @@ double bh_background_compton_cps(const bh_composition *composition, double energ
 		       bh_xray_compton_cm2_g_sr(composition->elements[i].z, energy_keV,
 						two_theta_rad);
 	return flux_s * solid_angle_sr * dcs /
-	       (bh_absorb_cm2_g(composition, energy_keV) + bh_absorb_cm2_g(composition, out_keV));
+	       (bh_absorb_cm2_g(composition, energy_keV) +
+		bh_absorb_cm2_g(composition, out_keV));
 }
 
 double bh_background_diffuse_cps(const bh_body *body, double energy_keV, double flux_s,
@@ -63,10 +66,13 @@ static double by_continuum_cps(double *path_cm2_g, const bh_body *body, size_t e
 {
 	enum { ENERGIES = 80 };
 	int z = body->composition->elements[element].z;
-	bh_shell shell = group == BH_FL_KA || group == BH_FL_KB ? BH_SHELL_K : BH_SHELL_L3;
-	double top_keV = continuum->low_keV + continuum->step_keV * (double)continuum->count;
+	bh_shell shell =
+		group == BH_FL_KA || group == BH_FL_KB ? BH_SHELL_K : BH_SHELL_L3;
+	double top_keV =
+		continuum->low_keV + continuum->step_keV * (double)continuum->count;
 	double from_keV = bh_xray_edge_keV(z, shell), step_keV, sum = 0, path = 0;
-	double out_cm2_g = bh_absorb_cm2_g(body->composition, bh_xray_group_keV(z, group));
+	double out_cm2_g =
+		bh_absorb_cm2_g(body->composition, bh_xray_group_keV(z, group));
 
 	*path_cm2_g = 0;
 
@@ -98,8 +104,8 @@ typedef struct {
 	size_t count;
 } row_list;
 
-static void add_row(row_list *list, const bh_body *body, size_t element, bh_fl_group group,
-		    const char *by, double rate_cps, double path_cm2_g)
+static void add_row(row_list *list, const bh_body *body, size_t element,
+		    bh_fl_group group, const char *by, double rate_cps, double path_cm2_g)
 {
 	int z = body->composition->elements[element].z;
 
@@ -136,8 +142,8 @@ typedef struct {
 	double omega_sr;
 } beam_terms;
 
-static void add_group(row_list *list, const bh_body *body, size_t element, bh_fl_group group,
-		      const beam_terms *b)
+static void add_group(row_list *list, const bh_body *body, size_t element,
+		      bh_fl_group group, const beam_terms *b)
 {
 	int z = body->composition->elements[element].z;
 	double out_keV = bh_xray_group_keV(z, group), counted, path_cm2_g, rate_cps;
@@ -150,15 +156,15 @@ static void add_group(row_list *list, const bh_body *body, size_t element, bh_fl
 	for (size_t k = 0; k < b->radiation->count; k++) {
 		const bh_line *line = &b->radiation->lines[k];
 
-		rate_cps = counted * bh_background_fluorescence_cps(body->composition, element,
-								    group, line->energy_keV,
-								    line->flux_s, b->omega_sr);
+		rate_cps = counted * bh_background_fluorescence_cps(
+					     body->composition, element, group,
+					     line->energy_keV, line->flux_s, b->omega_sr);
 		path_cm2_g = bh_absorb_cm2_g(body->composition, line->energy_keV) +
 			     bh_absorb_cm2_g(body->composition, out_keV);
 		add_row(list, body, element, group, line->name, rate_cps, path_cm2_g);
 	}
-	rate_cps = counted * by_continuum_cps(&path_cm2_g, body, element, group, b->continuum,
-					      b->omega_sr);
+	rate_cps = counted * by_continuum_cps(&path_cm2_g, body, element, group,
+					      b->continuum, b->omega_sr);
 	add_row(list, body, element, group, "continuum", rate_cps, path_cm2_g);
 }
 
@@ -168,11 +174,13 @@ bool bh_background_fluorescence(bh_fluorescence **rows, size_t *count, bh_arena 
 				const bh_continuum *continuum, bh_err *err)
 {
 	beam_terms beam = { instrument, setting, radiation, continuum,
-		      bh_detector_aperture_rad(instrument) * bh_detector_axial_frac(instrument) };
+			    bh_detector_aperture_rad(instrument) *
+				    bh_detector_axial_frac(instrument) };
 	row_list list = { NULL, 0 };
 
-	list.rows = bh_new(arena, bh_fluorescence,
-			   body->composition->count * BH_FL_GROUPS * (radiation->count + 1));
+	list.rows =
+		bh_new(arena, bh_fluorescence,
+		       body->composition->count * BH_FL_GROUPS * (radiation->count + 1));
 	if (!list.rows)
 		return bh_fail_memory(err);
 	for (size_t i = 0; i < body->composition->count; i++)
@@ -190,14 +198,15 @@ double bh_background_blank_cps(const bh_instrument *instrument, const bh_setting
 	const double *x = instrument->blank_two_theta_deg, *y = instrument->blank_cps;
 	size_t n = instrument->blank_count, i = 0;
 	/* air scatter grows with the beam: the blank was taken at the usual setting */
-	double usual = setting->tube->kV * setting->tube->mA *
-		       (instrument->usual_divergence_deg > 0 ? instrument->usual_divergence_deg
-							     : 1);
-	double now = setting->kV * setting->mA *
-		     (setting->divergence_deg > 0 ? setting->divergence_deg
-						  : instrument->usual_divergence_deg > 0
-							    ? instrument->usual_divergence_deg
-							    : 1);
+	double usual =
+		setting->tube->kV * setting->tube->mA *
+		(instrument->usual_divergence_deg > 0 ? instrument->usual_divergence_deg
+						      : 1);
+	double now =
+		setting->kV * setting->mA *
+		(setting->divergence_deg > 0		? setting->divergence_deg
+		 : instrument->usual_divergence_deg > 0 ? instrument->usual_divergence_deg
+							: 1);
 
 	if (n == 0)
 		return 0;
@@ -207,6 +216,7 @@ double bh_background_blank_cps(const bh_instrument *instrument, const bh_setting
 		return y[0] * now / usual;
 	if (i == n)
 		return y[n - 1] * now / usual;
-	return (y[i - 1] + (y[i] - y[i - 1]) * (two_theta_deg - x[i - 1]) / (x[i] - x[i - 1])) *
+	return (y[i - 1] +
+		(y[i] - y[i - 1]) * (two_theta_deg - x[i - 1]) / (x[i] - x[i - 1])) *
 	       now / usual;
 }

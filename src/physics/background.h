@@ -14,9 +14,9 @@
 /* One kind of atom in one kind of place: what scatters diffusely. */
 typedef struct {
 	int z;
-	double mass_frac;   /* of the specimen                                   */
+	double mass_frac; /* of the specimen                                   */
 	double b_iso_A2;
-	bool amorphous;     /* all of |f|² is diffuse, not 1 − exp(−2 B s²) of it */
+	bool amorphous; /* all of |f|² is diffuse, not 1 − exp(−2 B s²) of it */
 } bh_scatterer;
 
 /* What the beam meets: the specimen, or the holder beside it. */
@@ -41,7 +41,8 @@ double bh_background_fluorescence_cps(const bh_composition *composition, size_t 
 /* Compton scattering of one line, counts/s in one aperture before D(E'):
  *   Φ Ω DCS_C/(μ/ρ(E) + μ/ρ(E')) */
 double bh_background_compton_cps(const bh_composition *composition, double energy_keV,
-				 double flux_s, double solid_angle_sr, double two_theta_rad);
+				 double flux_s, double solid_angle_sr,
+				 double two_theta_rad);
 
 /* Diffuse (thermal, and amorphous) scattering of one line, before D(E):
  *   Φ Ω Σ (w N_A/A) r_e² P |f|² (1 − exp(−2 B s²))/(2 μ/ρ) */

@@ -39,6 +39,7 @@ bool bh_corundum_strength(double *strength, double *lorentz_polarization, bh_are
 			     (bh_without){ false });
 	*strength = (double)bh_hkl_equivalents(&phase.group, h, planes) * f2 /
 		    (phase.volume_A3 * phase.volume_A3 * phase.density_g_cm3);
-	*lorentz_polarization = bh_geometry_lorentz_polarization(1, bh_rad(two_theta_deg / 2));
+	*lorentz_polarization =
+		bh_geometry_lorentz_polarization(1, bh_rad(two_theta_deg / 2));
 	return true;
 }

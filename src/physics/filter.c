@@ -39,7 +39,8 @@ double bh_filter_thickness_um(const bh_anode *anode, int z, double before, doubl
 
 	if (!(step_cm2_g > 0) || after >= before)
 		return 0;
-	return log(before / after) / (step_cm2_g * bh_xray_density_g_cm3(z)) / BH_CM_PER_UM;
+	return log(before / after) / (step_cm2_g * bh_xray_density_g_cm3(z)) /
+	       BH_CM_PER_UM;
 }
 
 double bh_filter_kbeta_ratio(const bh_anode *anode)
@@ -62,16 +63,19 @@ static double crystal_frac(const bh_tube *tube, double energy_keV)
 	const bh_monochromator *crystal = &tube->monochromator;
 	bh_band band = bh_filter_band(tube);
 	/* Kα1 and Kα2 lie 2.5e-3 to 8e-3 apart in energy: halfway is the cut */
-	double cut_keV = (bh_energy_keV(tube->anode->ka1_A) +
-			  bh_energy_keV(tube->anode->ka2_A)) / 2;
+	double cut_keV =
+		(bh_energy_keV(tube->anode->ka1_A) + bh_energy_keV(tube->anode->ka2_A)) /
+		2;
 
 	if (crystal->ka1_only) {
 		double half_keV = bh_energy_keV(tube->anode->ka1_A) - cut_keV;
 
 		return fabs(energy_keV - cut_keV - half_keV) < half_keV
-			       ? crystal->reflectivity : 0;
+			       ? crystal->reflectivity
+			       : 0;
 	}
-	return fabs(energy_keV - band.centre_keV) < band.half_keV ? crystal->reflectivity : 0;
+	return fabs(energy_keV - band.centre_keV) < band.half_keV ? crystal->reflectivity
+								  : 0;
 }
 
 double bh_filter_pass_frac(const bh_tube *tube, bh_side side, double energy_keV)

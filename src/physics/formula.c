@@ -1,5 +1,6 @@
 #include "physics/formula.h"
 
+#include <math.h>
 #include <stdlib.h>
 #include <string.h>
 
@@ -124,6 +125,10 @@ static bool group(reader *r, double times, int depth)
 			return refuse(r, "no element symbol");
 		if (!count_of(&count, r))
 			return false;
+		/* "CaSO4.2H2O" */
+		if (count != floor(count) && strncmp(r->at, "H2O", 3) == 0)
+			return refuse(r,
+				      "a decimal or a hydrate? (write a hydrate with *)");
 		r->atoms[z] += times * count;
 	}
 	return r->at > first || refuse(r, "nothing");

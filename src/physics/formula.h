@@ -11,7 +11,7 @@
 enum { BH_FORMULA_DEPTH = 8, BH_FORMULA_LENGTH = 120 };
 
 /* Elements by mass of a chemical formula: "Fe2O3", "Ca(OH)2", "Li0.5CoO2", "CaSO4*2H2O"
- * (also "·": hydrate dot; a "." is a decimal point only).
+ * (also "·": hydrate dot; a "." is a decimal point only, and "CaSO4.2H2O" is refused).
  *   false  BH_BAD_INPUT: says which character and what is allowed */
 bool bh_formula_read(bh_composition *composition, bh_arena *arena, const char *text,
 		     bh_err *err);

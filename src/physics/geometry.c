@@ -26,10 +26,12 @@ double bh_geometry_lit_frac(double divergence_deg, double radius_mm, double leng
 	double a = length_mm / 2, rise = a * sin(theta), run = a * cos(theta);
 
 	return (side_rad(delta / 2, atan2(rise, radius_mm - run)) +
-		side_rad(delta / 2, atan2(rise, radius_mm + run))) / delta;
+		side_rad(delta / 2, atan2(rise, radius_mm + run))) /
+	       delta;
 }
 
-double bh_geometry_full_from_deg(double divergence_deg, double radius_mm, double length_mm)
+double bh_geometry_full_from_deg(double divergence_deg, double radius_mm,
+				 double length_mm)
 {
 	double low = 0, high = 180;
 
@@ -70,8 +72,8 @@ double bh_geometry_flat_deg(double divergence_deg, double two_theta_deg)
 double bh_geometry_thick_mm(double attenuation_inv_cm, double packing_frac,
 			    double two_theta_deg)
 {
-	return 3.2 * sin(bh_rad(two_theta_deg / 2)) / (attenuation_inv_cm * packing_frac) /
-	       BH_CM_PER_MM;
+	return 3.2 * sin(bh_rad(two_theta_deg / 2)) /
+	       (attenuation_inv_cm * packing_frac) / BH_CM_PER_MM;
 }
 
 double bh_geometry_depth_mm(double share_frac, double attenuation_inv_cm,
@@ -90,5 +92,6 @@ double bh_geometry_polarization(double a, double theta_rad)
 
 double bh_geometry_lorentz_polarization(double a, double theta_rad)
 {
-	return bh_geometry_polarization(a, theta_rad) * 2 / (sin(theta_rad) * sin(2 * theta_rad));
+	return bh_geometry_polarization(a, theta_rad) * 2 /
+	       (sin(theta_rad) * sin(2 * theta_rad));
 }

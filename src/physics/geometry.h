@@ -17,7 +17,8 @@ double bh_geometry_lit_frac(double divergence_deg, double radius_mm, double leng
 			    double two_theta_deg);
 
 /* Smallest 2θ at which the whole beam falls on the specimen; 180 when none. */
-double bh_geometry_full_from_deg(double divergence_deg, double radius_mm, double length_mm);
+double bh_geometry_full_from_deg(double divergence_deg, double radius_mm,
+				 double length_mm);
 
 /* Line shift of a specimen off the axis, ° 2θ: −2 s cosθ/R; s > 0 below the axis.
  *   from  International Tables H (2019), Table 3.1.1 */

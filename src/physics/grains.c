@@ -6,7 +6,8 @@
 #include "physics/detector.h"
 #include "physics/geometry.h"
 
-double bh_grains_spread_rad(const bh_scene *scene, const bh_setting *setting, bh_view view)
+double bh_grains_spread_rad(const bh_scene *scene, const bh_setting *setting,
+			    bh_view view)
 {
 	const bh_instrument *instrument = scene->instrument;
 
@@ -24,14 +25,16 @@ double bh_grains_spin_gain(double across_rad, double along_rad)
 }
 
 /* Lit area of the specimen, mm². */
-static double lit_mm2(const bh_scene *scene, const bh_setting *setting, double two_theta_deg)
+static double lit_mm2(const bh_scene *scene, const bh_setting *setting,
+		      double two_theta_deg)
 {
 	const bh_instrument *instrument = scene->instrument;
 	const bh_specimen *specimen = &scene->request->specimen;
-	double along = setting->divergence_deg > 0
-			       ? bh_geometry_footprint_mm(setting->divergence_deg,
-							  instrument->radius_mm, two_theta_deg)
-			       : instrument->automatic_length_mm;
+	double along =
+		setting->divergence_deg > 0
+			? bh_geometry_footprint_mm(setting->divergence_deg,
+						   instrument->radius_mm, two_theta_deg)
+			: instrument->automatic_length_mm;
 
 	return fmin(along, specimen->length_mm) *
 	       fmin(instrument->beam_width_mm, specimen->width_mm);
@@ -42,8 +45,8 @@ double bh_grains_effective(const bh_signal *signal, const bh_scene *scene,
 			   bh_view view, bool spin)
 {
 	double s = sin(bh_rad(two_theta_deg / 2)), diameter_mm, grain_mm3, solid_mm3, n;
-	double mu_inv_cm = signal->radiation.lines[0].mass_attenuation_cm2_g *
-			   signal->density_g_cm3;
+	double mu_inv_cm =
+		signal->radiation.lines[0].mass_attenuation_cm2_g * signal->density_g_cm3;
 	double along = bh_grains_spread_rad(scene, &signal->setting, view);
 	double across = signal->axial_frac / (2 * s);
 	double volume_frac, depth_mm;

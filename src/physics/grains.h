@@ -8,7 +8,7 @@
 
 /* How the detector meets a line, for the spread of grain orientations that count. */
 typedef enum {
-	BH_VIEW_STILL,   /* slit, or a strip that stands: source and aperture     */
+	BH_VIEW_STILL,	 /* slit, or a strip that stands: source and aperture     */
 	BH_VIEW_SWEEPING /* a moving strip: the specimen turns by half its window */
 } bh_view;
 
@@ -24,7 +24,8 @@ double bh_grains_effective(const bh_signal *signal, const bh_scene *scene,
 			   bh_view view, bool spin);
 
 /* Spread of orientations in the diffraction plane, rad. */
-double bh_grains_spread_rad(const bh_scene *scene, const bh_setting *setting, bh_view view);
+double bh_grains_spread_rad(const bh_scene *scene, const bh_setting *setting,
+			    bh_view view);
 
 /* Factor that turning the specimen in its plane multiplies N_eff by, ≥ 1. */
 double bh_grains_spin_gain(double across_rad, double along_rad);

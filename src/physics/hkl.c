@@ -159,28 +159,44 @@ static void collect_rotations(collection *c)
 	}
 }
 
+static void turn_by(int k[3], const int h[3], const rotation *r)
+{
+	for (int j = 0; j < 3; j++)
+		k[j] = h[0] * r->by[0][j] + h[1] * r->by[1][j] + h[2] * r->by[2][j];
+}
+
 /* Whether h is the printed one of its equivalents: most planes fail at the first few. */
 static bool is_standard(const collection *c, const int h[3])
 {
 	for (size_t i = 0; i < c->rotation_count; i++) {
-		const rotation *r = &c->rotations[i];
 		int k[3], opposite[3];
 
-		for (int j = 0; j < 3; j++) {
-			k[j] = h[0] * r->by[0][j] + h[1] * r->by[1][j] +
-			       h[2] * r->by[2][j];
+		turn_by(k, h, &c->rotations[i]);
+		for (int j = 0; j < 3; j++)
 			opposite[j] = -k[j];
-		}
 		if (comes_first(k, h) || comes_first(opposite, h))
 			return false;
 	}
 	return true;
 }
 
+/* Orbit and stabiliser: all rotations and their opposites over those that leave h. */
+static int multiplicity(const collection *c, const int h[3])
+{
+	const int opposite[3] = { -h[0], -h[1], -h[2] };
+	int staying = 0;
+
+	for (size_t i = 0; i < c->rotation_count; i++) {
+		int k[3];
+
+		turn_by(k, h, &c->rotations[i]);
+		staying += same(k, h) + same(k, opposite);
+	}
+	return 2 * (int)c->rotation_count / staying;
+}
+
 static bool collect(collection *c, const int h[3], double inv_A2)
 {
-	int equivalents[BH_MAX_EQUIVALENTS][3];
-
 	if (!(inv_A2 > 0) || inv_A2 > c->most_inv_A2)
 		return true;
 	if (!is_standard(c, h) || bh_hkl_absent(c->group, h))
@@ -195,9 +211,7 @@ static bool collect(collection *c, const int h[3], double inv_A2)
 		c->capacity = more;
 	}
 	c->planes[c->count++] =
-		(bh_hkl){ { h[0], h[1], h[2] },
-			  (int)bh_hkl_equivalents(c->group, h, equivalents),
-			  1 / sqrt(inv_A2) };
+		(bh_hkl){ { h[0], h[1], h[2] }, multiplicity(c, h), 1 / sqrt(inv_A2) };
 	return true;
 }
 

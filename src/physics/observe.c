@@ -29,15 +29,18 @@ bh_setting bh_observe_usual(const bh_instrument *instrument, const bh_tube *tube
 	};
 }
 
-bh_lit bh_lit_at(const bh_request *request, const bh_setting *setting, double two_theta_deg)
+bh_lit bh_lit_at(const bh_request *request, const bh_setting *setting,
+		 double two_theta_deg)
 {
 	const bh_instrument *instrument = request->instrument;
 	const bh_specimen *specimen = &request->specimen;
-	double across = fmin(1, specimen->width_mm / instrument->beam_width_mm), share, beam = 1;
+	double across = fmin(1, specimen->width_mm / instrument->beam_width_mm), share,
+	       beam = 1;
 
 	if (setting->divergence_deg > 0) {
-		share = bh_geometry_lit_frac(setting->divergence_deg, instrument->radius_mm,
-					     specimen->length_mm, two_theta_deg);
+		share = bh_geometry_lit_frac(setting->divergence_deg,
+					     instrument->radius_mm, specimen->length_mm,
+					     two_theta_deg);
 	} else {
 		beam = sin(bh_rad(two_theta_deg / 2));
 		share = fmin(1, specimen->length_mm / instrument->automatic_length_mm);
@@ -75,7 +78,8 @@ static bool mix(bh_signal *signal, bh_arena *arena, const bh_scene *scene, bh_er
 		share += phase->share_frac;
 	}
 	if (request->amorphous_frac > 0 && request->amorphous.count > 0)
-		parts[n++] = (bh_mix_part){ &request->amorphous, request->amorphous_frac };
+		parts[n++] =
+			(bh_mix_part){ &request->amorphous, request->amorphous_frac };
 	if (n == 0 || !(volume > 0))
 		return true;
 	signal->density_g_cm3 = share / volume;
@@ -94,12 +98,12 @@ static size_t add_sites(bh_scatterer *scatterers, size_t n, const bh_phase *phas
 	for (size_t i = 0; mass > 0 && i < phase->site_count; i++) {
 		const bh_site *site = &phase->sites[i];
 
-		scatterers[n++] = (bh_scatterer){
-			site->z,
-			share_frac * site->multiplicity * site->occupancy *
-				bh_xray_molar_mass_g(site->z) / mass,
-			site->b_iso_A2, false
-		};
+		scatterers[n++] =
+			(bh_scatterer){ site->z,
+					share_frac * site->multiplicity *
+						site->occupancy *
+						bh_xray_molar_mass_g(site->z) / mass,
+					site->b_iso_A2, false };
 	}
 	return n;
 }
@@ -118,13 +122,14 @@ static bool specimen_body(bh_body *body, bh_arena *arena, const bh_scene *scene,
 			  const bh_signal *signal, bh_err *err)
 {
 	const bh_request *request = scene->request;
-	const bh_composition *amorphous = request->amorphous.count ? &request->amorphous
-								   : &signal->mixture;
+	const bh_composition *amorphous =
+		request->amorphous.count ? &request->amorphous : &signal->mixture;
 	size_t most = amorphous->count, n = 0;
 	bh_scatterer *scatterers;
 
 	for (size_t i = 0; i < request->phase_count; i++)
-		most += request->phases[i].site_count + request->phases[i].composition.count;
+		most += request->phases[i].site_count +
+			request->phases[i].composition.count;
 	scatterers = bh_new(arena, bh_scatterer, most);
 	if (!scatterers)
 		return bh_fail_memory(err);
@@ -133,10 +138,9 @@ static bool specimen_body(bh_body *body, bh_arena *arena, const bh_scene *scene,
 
 		if (!(phase->share_frac > 0))
 			continue;
-		n = phase->site_count
-			    ? add_sites(scatterers, n, phase, phase->share_frac)
-			    : add_elements(scatterers, n, &phase->composition,
-					   phase->share_frac, false);
+		n = phase->site_count ? add_sites(scatterers, n, phase, phase->share_frac)
+				      : add_elements(scatterers, n, &phase->composition,
+						     phase->share_frac, false);
 	}
 	if (request->amorphous_frac > 0)
 		n = add_elements(scatterers, n, amorphous, request->amorphous_frac, true);
@@ -145,7 +149,8 @@ static bool specimen_body(bh_body *body, bh_arena *arena, const bh_scene *scene,
 	return true;
 }
 
-static bool holder_body(bh_body *body, bh_arena *arena, const bh_phase *holder, bh_err *err)
+static bool holder_body(bh_body *body, bh_arena *arena, const bh_phase *holder,
+			bh_err *err)
 {
 	bh_scatterer *scatterers = bh_new(arena, bh_scatterer, holder->site_count);
 
@@ -165,21 +170,23 @@ typedef struct {
 
 /* Compton and diffuse scattering of one energy into the detector, thick body. */
 static void scatter(double *compton_cps, double *diffuse_cps, const view *v,
-		    const bh_body *body, double energy_keV, double flux_s, double counted_frac,
-		    double theta2_rad)
+		    const bh_body *body, double energy_keV, double flux_s,
+		    double counted_frac, double theta2_rad)
 {
 	const bh_signal *signal = v->signal;
 	double out_keV = bh_xray_compton_keV(energy_keV, theta2_rad);
 	double mu = bh_absorb_cm2_g(body->composition, energy_keV);
 	double thick = -expm1(-2 * mu * body->areal_g_cm2 / sin(theta2_rad / 2));
 
-	*compton_cps += thick *
-			bh_background_compton_cps(body->composition, energy_keV, flux_s,
-						  v->omega_sr, theta2_rad) *
-			bh_detector_counted_frac(v->scene->instrument, &signal->setting, out_keV);
-	*diffuse_cps += thick * counted_frac *
-			bh_background_diffuse_cps(body, energy_keV, flux_s, v->omega_sr,
-						  theta2_rad, signal->radiation.polarization);
+	*compton_cps +=
+		thick *
+		bh_background_compton_cps(body->composition, energy_keV, flux_s,
+					  v->omega_sr, theta2_rad) *
+		bh_detector_counted_frac(v->scene->instrument, &signal->setting, out_keV);
+	*diffuse_cps +=
+		thick * counted_frac *
+		bh_background_diffuse_cps(body, energy_keV, flux_s, v->omega_sr,
+					  theta2_rad, signal->radiation.polarization);
 }
 
 /* The continuum, Compton and diffuse, for the energies that the detector counts: four bins
@@ -220,7 +227,8 @@ static double continuum_bragg_cps(const view *v, double two_theta_deg)
 		double wavelength_A = 2 * r->d_A * sin(theta);
 		double energy_keV = bh_energy_keV(wavelength_A);
 		size_t bin = bh_continuum_bin(c, energy_keV);
-		bool holder = v->scene->has_holder && r->phase + 1 == v->scene->phase_count;
+		bool holder =
+			v->scene->has_holder && r->phase + 1 == v->scene->phase_count;
 
 		if (!r->rate_known || holder || bin >= c->count ||
 		    !(c->counted_frac[bin] > 1e-4) || !(c->flux_s_keV[bin] > 0))
@@ -234,8 +242,8 @@ static double continuum_bragg_cps(const view *v, double two_theta_deg)
 	return sum * lit.specimen_frac;
 }
 
-static double fluorescence_cps(const bh_fluorescence *rows, size_t count, double areal_g_cm2,
-			       double two_theta_deg)
+static double fluorescence_cps(const bh_fluorescence *rows, size_t count,
+			       double areal_g_cm2, double two_theta_deg)
 {
 	double sum = 0, s = sin(bh_rad(two_theta_deg / 2));
 
@@ -244,8 +252,8 @@ static double fluorescence_cps(const bh_fluorescence *rows, size_t count, double
 	return sum;
 }
 
-static void add_body(bh_background *b, const view *v, const bh_body *body, double lit_frac,
-		     const bh_fluorescence *rows, size_t row_count)
+static void add_body(bh_background *b, const view *v, const bh_body *body,
+		     double lit_frac, const bh_fluorescence *rows, size_t row_count)
 {
 	double theta2_rad = bh_rad(b->two_theta_deg), compton_cps = 0, diffuse_cps = 0;
 
@@ -254,8 +262,8 @@ static void add_body(bh_background *b, const view *v, const bh_body *body, doubl
 	for (size_t k = 0; k < v->signal->radiation.count; k++) {
 		const bh_line *line = &v->signal->radiation.lines[k];
 
-		scatter(&compton_cps, &diffuse_cps, v, body, line->energy_keV, line->flux_s,
-			line->detected_frac, theta2_rad);
+		scatter(&compton_cps, &diffuse_cps, v, body, line->energy_keV,
+			line->flux_s, line->detected_frac, theta2_rad);
 	}
 	b->compton += compton_cps * lit_frac;
 	b->diffuse += diffuse_cps * lit_frac;
@@ -278,7 +286,8 @@ static void add_continuum(bh_signal *signal, const view *v, const bh_body *body)
 		bh_background *b = &signal->background[i];
 		double at = step > 0 ? (b->two_theta_deg - low) / step : 0;
 		int k = at < last - 1 ? (int)at : last - 1;
-		bh_lit lit = bh_lit_at(v->scene->request, &signal->setting, b->two_theta_deg);
+		bh_lit lit =
+			bh_lit_at(v->scene->request, &signal->setting, b->two_theta_deg);
 
 		b->continuum = (coarse[k] + (coarse[k + 1] - coarse[k]) * (at - k)) *
 				       lit.specimen_frac +
@@ -286,12 +295,15 @@ static void add_continuum(bh_signal *signal, const view *v, const bh_body *body)
 	}
 }
 
-static bool blank_grid(bh_signal *signal, bh_arena *arena, const bh_scene *scene, bh_err *err)
+static bool blank_grid(bh_signal *signal, bh_arena *arena, const bh_scene *scene,
+		       bh_err *err)
 {
 	static const double step_deg = 0.5; /* every part varies slowly on this scale */
 	bool all = !(scene->background_high_deg > 0);
-	double low = all ? scene->instrument->two_theta_min_deg : scene->background_low_deg;
-	double high = all ? scene->instrument->two_theta_max_deg : scene->background_high_deg;
+	double low =
+		all ? scene->instrument->two_theta_min_deg : scene->background_low_deg;
+	double high =
+		all ? scene->instrument->two_theta_max_deg : scene->background_high_deg;
 	size_t steps = (size_t)ceil((high - low) / step_deg - 1e-9);
 
 	signal->background = bh_new(arena, bh_background, steps + 1);
@@ -322,14 +334,16 @@ static bool add_holder(bh_signal *signal, bh_arena *arena, const bh_scene *scene
 	if (!holder_body(&body, arena, holder, err) ||
 	    !bh_continuum_make(&continuum, arena, scene->instrument, &signal->setting,
 			       &holder->composition, err) ||
-	    !bh_background_fluorescence(&rows, &row_count, arena, &body, scene->instrument,
-					&signal->setting, &signal->radiation, &continuum, err))
+	    !bh_background_fluorescence(&rows, &row_count, arena, &body,
+					scene->instrument, &signal->setting,
+					&signal->radiation, &continuum, err))
 		return false;
 	for (size_t i = 0; i < signal->background_count; i++) {
 		bh_background *b = &signal->background[i];
 
 		add_body(b, v, &body,
-			 bh_lit_at(scene->request, &signal->setting, b->two_theta_deg).holder_frac,
+			 bh_lit_at(scene->request, &signal->setting, b->two_theta_deg)
+				 .holder_frac,
 			 rows, row_count);
 	}
 	return true;
@@ -354,7 +368,8 @@ static bool background(bh_signal *signal, bh_arena *arena, const bh_scene *scene
 		for (size_t i = 0; i < signal->background_count; i++)
 			add_body(&signal->background[i], &v, &body,
 				 bh_lit_at(scene->request, &signal->setting,
-					   signal->background[i].two_theta_deg).specimen_frac,
+					   signal->background[i].two_theta_deg)
+					 .specimen_frac,
 				 signal->fluorescence, signal->fluorescence_count);
 		add_continuum(signal, &v, &body);
 		if (scene->has_holder && !add_holder(signal, arena, scene, &v, err))
@@ -363,7 +378,8 @@ static bool background(bh_signal *signal, bh_arena *arena, const bh_scene *scene
 	for (size_t i = 0; i < signal->background_count; i++) {
 		bh_background *b = &signal->background[i];
 
-		b->total = b->blank + b->fluorescence + b->continuum + b->compton + b->diffuse;
+		b->total = b->blank + b->fluorescence + b->continuum + b->compton +
+			   b->diffuse;
 	}
 	return true;
 }
@@ -380,11 +396,12 @@ bool bh_observe(bh_signal *signal, bh_arena *arena, const bh_scene *scene,
 	};
 	if (!mix(signal, arena, scene, err))
 		return false;
-	bh_radiation_make(&signal->radiation, scene->instrument, setting, &signal->mixture);
+	bh_radiation_make(&signal->radiation, scene->instrument, setting,
+			  &signal->mixture);
 	for (size_t k = 0; scene->has_holder && k < signal->radiation.count; k++)
-		signal->holder_attenuation_cm2_g[k] =
-			bh_absorb_cm2_g(&scene->phases[scene->phase_count - 1].composition,
-					signal->radiation.lines[k].energy_keV);
+		signal->holder_attenuation_cm2_g[k] = bh_absorb_cm2_g(
+			&scene->phases[scene->phase_count - 1].composition,
+			signal->radiation.lines[k].energy_keV);
 	return bh_reflect(signal, arena, scene, err) &&
 	       bh_continuum_make(&continuum, arena, scene->instrument, setting,
 				 &signal->mixture, err) &&

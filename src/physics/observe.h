@@ -14,7 +14,7 @@ typedef struct {
 	const bh_instrument *instrument;
 	const bh_phase *phases;
 	size_t phase_count;
-	bool has_holder;       /* the last phase is the holder */
+	bool has_holder; /* the last phase is the holder */
 	/* Where the background is wanted; both 0: within the arms' reach. To compare settings
 	 * at one line only its neighbourhood is needed. */
 	double background_low_deg, background_high_deg;
@@ -26,7 +26,8 @@ typedef struct {
 	double specimen_frac, holder_frac;
 } bh_lit;
 
-bh_lit bh_lit_at(const bh_request *request, const bh_setting *setting, double two_theta_deg);
+bh_lit bh_lit_at(const bh_request *request, const bh_setting *setting,
+		 double two_theta_deg);
 
 /* Powder on the beam's path, g/cm²: packing · X-ray density · thickness. */
 double bh_observe_areal_g_cm2(const bh_request *request, double density_g_cm3);

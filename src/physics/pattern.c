@@ -27,8 +27,8 @@ void bh_pattern(double *cps, double *background_cps, size_t count, double from_d
 	static const double reach_fwhm = 30;
 
 	for (size_t i = 0; i < count; i++)
-		cps[i] = background_cps[i] =
-			bh_observe_background_cps(signal, from_deg + (double)i * step_deg);
+		cps[i] = background_cps[i] = bh_observe_background_cps(
+			signal, from_deg + (double)i * step_deg);
 	for (size_t k = 0; k < signal->peak_count; k++) {
 		const bh_peak *peak = &signal->peaks[k];
 		bh_profile profile = { peak->fwhm_deg, peak->eta };
@@ -42,8 +42,8 @@ void bh_pattern(double *cps, double *background_cps, size_t count, double from_d
 		last = last > (double)count - 1 ? (double)count - 1 : last;
 		for (size_t i = (size_t)first; i <= (size_t)last; i++)
 			cps[i] += peak->rate_cps_deg *
-				  bh_profile_height_inv_deg(profile,
-							    from_deg + (double)i * step_deg -
-								    peak->two_theta_deg);
+				  bh_profile_height_inv_deg(
+					  profile, from_deg + (double)i * step_deg -
+							   peak->two_theta_deg);
 	}
 }

@@ -4,15 +4,17 @@
 
 #include "base/units.h"
 
-static const double scherrer_k = 0.9; /* P. Scherrer, Nachr. Ges. Wiss. Göttingen (1918) 98 */
+static const double scherrer_k =
+	0.9; /* P. Scherrer, Nachr. Ges. Wiss. Göttingen (1918) 98 */
 static const double four_ln2 = 2.77258872223978124;
 
 bh_profile bh_profile_of(double gauss_deg, double lorentz_deg)
 {
 	double g = gauss_deg, l = lorentz_deg, q;
-	double fwhm = pow(pow(g, 5) + 2.69269 * pow(g, 4) * l + 2.42843 * pow(g, 3) * l * l +
-			  4.47163 * g * g * pow(l, 3) + 0.07842 * g * pow(l, 4) + pow(l, 5),
-			  0.2);
+	double fwhm = pow(
+		pow(g, 5) + 2.69269 * pow(g, 4) * l + 2.42843 * pow(g, 3) * l * l +
+			4.47163 * g * g * pow(l, 3) + 0.07842 * g * pow(l, 4) + pow(l, 5),
+		0.2);
 
 	q = fwhm > 0 ? l / fwhm : 0;
 	return (bh_profile){ fwhm, 1.36603 * q - 0.47719 * q * q + 0.11116 * q * q * q };
@@ -21,8 +23,8 @@ bh_profile bh_profile_of(double gauss_deg, double lorentz_deg)
 double bh_profile_gauss_deg(const bh_instrument *instrument, double two_theta_deg)
 {
 	double t = tan(bh_rad(two_theta_deg / 2));
-	double square = instrument->gauss_tan2_deg2 * t * t + instrument->gauss_tan_deg2 * t +
-			instrument->gauss_0_deg2;
+	double square = instrument->gauss_tan2_deg2 * t * t +
+			instrument->gauss_tan_deg2 * t + instrument->gauss_0_deg2;
 
 	return square > 0 ? sqrt(square) : 0;
 }

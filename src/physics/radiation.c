@@ -13,9 +13,10 @@ enum { BERYLLIUM = 4 };
 
 double bh_radiation_beam_sr_mA(const bh_instrument *instrument, const bh_setting *setting)
 {
-	double divergence_rad = setting->divergence_deg > 0
-					? bh_rad(setting->divergence_deg)
-					: instrument->automatic_length_mm / instrument->radius_mm;
+	double divergence_rad =
+		setting->divergence_deg > 0
+			? bh_rad(setting->divergence_deg)
+			: instrument->automatic_length_mm / instrument->radius_mm;
 	double axial_rad = instrument->beam_width_mm / instrument->radius_mm;
 	double soller_rad = bh_rad(instrument->soller_tube_deg);
 
@@ -29,7 +30,8 @@ double bh_radiation_path_frac(const bh_instrument *instrument, const bh_tube *tu
 {
 	return bh_absorb_layer_frac(BERYLLIUM, tube->window_um, energy_keV) *
 	       bh_filter_pass_frac(tube, BH_SIDE_TUBE, energy_keV) *
-	       bh_absorb_gas_frac(instrument->tube_path, instrument->radius_mm, energy_keV);
+	       bh_absorb_gas_frac(instrument->tube_path, instrument->radius_mm,
+				  energy_keV);
 }
 
 static const char *const line_names[BH_LINE_KINDS] = { "Ka1", "Ka2", "Kb", "W La1" };
@@ -53,10 +55,11 @@ static double emitted_per_s_sr_mA(const bh_setting *setting, int kind)
 	const bh_tube *tube = setting->tube;
 
 	if (kind == BH_W_LA1)
-		return tube->tungsten_share * bh_tube_line_per_s_sr_mA(tube->anode, BH_KA1,
-								       setting->kV,
-								       tube->takeoff_deg);
-	return bh_tube_line_per_s_sr_mA(tube->anode, kind, setting->kV, tube->takeoff_deg);
+		return tube->tungsten_share *
+		       bh_tube_line_per_s_sr_mA(tube->anode, BH_KA1, setting->kV,
+						tube->takeoff_deg);
+	return bh_tube_line_per_s_sr_mA(tube->anode, kind, setting->kV,
+					tube->takeoff_deg);
 }
 
 static void kbeta_ratios(bh_radiation *radiation)
@@ -84,14 +87,16 @@ void bh_radiation_make(bh_radiation *radiation, const bh_instrument *instrument,
 	double beam = bh_radiation_beam_sr_mA(instrument, setting);
 
 	*radiation = (bh_radiation){
-		.overvoltage = setting->kV / bh_xray_edge_keV(setting->tube->anode->z, BH_SHELL_K),
+		.overvoltage = setting->kV /
+			       bh_xray_edge_keV(setting->tube->anode->z, BH_SHELL_K),
 		.polarization = bh_filter_polarization(setting->tube),
 	};
 	for (int kind = 0; kind < BH_LINE_KINDS; kind++) {
 		double lambda_A = wavelength_A(setting->tube->anode, kind);
 		double energy_keV = bh_energy_keV(lambda_A);
-		double flux_s = emitted_per_s_sr_mA(setting, kind) * beam *
-				bh_radiation_path_frac(instrument, setting->tube, energy_keV);
+		double flux_s =
+			emitted_per_s_sr_mA(setting, kind) * beam *
+			bh_radiation_path_frac(instrument, setting->tube, energy_keV);
 
 		if (kind != BH_KA1 && !(flux_s > 0))
 			continue;
@@ -101,7 +106,8 @@ void bh_radiation_make(bh_radiation *radiation, const bh_instrument *instrument,
 			.wavelength_A = lambda_A,
 			.energy_keV = energy_keV,
 			.flux_s = flux_s,
-			.detected_frac = bh_detector_counted_frac(instrument, setting, energy_keV),
+			.detected_frac =
+				bh_detector_counted_frac(instrument, setting, energy_keV),
 			.mass_attenuation_cm2_g =
 				mixture ? bh_absorb_cm2_g(mixture, energy_keV) : 0,
 		};
@@ -118,7 +124,8 @@ size_t bh_continuum_bin(const bh_continuum *continuum, double energy_keV)
 {
 	double bin = (energy_keV - continuum->low_keV) / continuum->step_keV;
 
-	return bin >= 0 && bin < (double)continuum->count ? (size_t)bin : continuum->count;
+	return bin >= 0 && bin < (double)continuum->count ? (size_t)bin
+							  : continuum->count;
 }
 
 bool bh_continuum_make(bh_continuum *continuum, bh_arena *arena,
@@ -130,10 +137,14 @@ bool bh_continuum_make(bh_continuum *continuum, bh_arena *arena,
 	static const double low_keV = 2;
 	enum { BINS = 400 };
 	const bh_tube *tube = setting->tube;
-	double beam = bh_radiation_beam_sr_mA(instrument, setting) * instrument->continuum_scale;
+	double beam = bh_radiation_beam_sr_mA(instrument, setting) *
+		      instrument->continuum_scale;
 
-	*continuum = (bh_continuum){ low_keV, (setting->kV - low_keV) / BINS, BINS,
-				     bh_new(arena, double, BINS), bh_new(arena, double, BINS),
+	*continuum = (bh_continuum){ low_keV,
+				     (setting->kV - low_keV) / BINS,
+				     BINS,
+				     bh_new(arena, double, BINS),
+				     bh_new(arena, double, BINS),
 				     bh_new(arena, double, BINS) };
 	if (!continuum->flux_s_keV || !continuum->counted_frac ||
 	    !continuum->attenuation_cm2_g)
@@ -143,8 +154,8 @@ bool bh_continuum_make(bh_continuum *continuum, bh_arena *arena,
 
 		continuum->flux_s_keV[i] =
 			beam * bh_radiation_path_frac(instrument, tube, energy_keV) *
-			bh_tube_continuum_per_s_sr_mA_keV(tube->anode, energy_keV, setting->kV,
-							  tube->takeoff_deg);
+			bh_tube_continuum_per_s_sr_mA_keV(tube->anode, energy_keV,
+							  setting->kV, tube->takeoff_deg);
 		continuum->counted_frac[i] =
 			bh_detector_counted_frac(instrument, setting, energy_keV);
 		continuum->attenuation_cm2_g[i] =

@@ -12,7 +12,8 @@
 /* Photons/s per unit of tube-side intensity (photons/(s sr mA)) that reach the specimen
  * plane: current, divergence, axial acceptance and throughput. An automatic slit counts at
  * its widest (θ = 90°); its sinθ stands in bh_lit. */
-double bh_radiation_beam_sr_mA(const bh_instrument *instrument, const bh_setting *setting);
+double bh_radiation_beam_sr_mA(const bh_instrument *instrument,
+			       const bh_setting *setting);
 
 /* Share of photons that pass from the anode to the specimen plane: tube window, optics and
  * path on the tube's side. */
@@ -26,11 +27,11 @@ void bh_radiation_make(bh_radiation *radiation, const bh_instrument *instrument,
 
 /* The tube's continuum at the specimen, in bins of equal width. */
 typedef struct {
-	double low_keV, step_keV;   /* centre of bin i: low + (i + ½) step    */
+	double low_keV, step_keV; /* centre of bin i: low + (i + ½) step    */
 	size_t count;
-	double *flux_s_keV;         /* photons/(s keV) at the specimen plane  */
-	double *counted_frac;       /* D(E)                                   */
-	double *attenuation_cm2_g;  /* μ/ρ of the specimen                    */
+	double *flux_s_keV;	   /* photons/(s keV) at the specimen plane  */
+	double *counted_frac;	   /* D(E)                                   */
+	double *attenuation_cm2_g; /* μ/ρ of the specimen                    */
 } bh_continuum;
 
 /*   false  memory is out */

@@ -3,17 +3,17 @@
 
 /* What one reflection at one emission line needs. */
 typedef struct {
-	double flux_s;             /* photons/s at the specimen plane           */
+	double flux_s; /* photons/s at the specimen plane           */
 	double wavelength_A;
 	double theta_rad;
-	double polarization;       /* A                                         */
-	double strength_inv_A6;    /* m |F|²/v², texture included               */
+	double polarization;		/* A                                         */
+	double strength_inv_A6;		/* m |F|²/v², texture included               */
 	double share_per_density_cm3_g; /* w_α/ρ_α                              */
-	double attenuation_cm2_g;  /* μ/ρ of the mixture at the line            */
-	double axial_frac;         /* h_eff/R                                   */
-	double aperture_rad;       /* Δ, one aperture along 2θ                   */
-	double counted_frac;       /* D(E)                                      */
-	double lit_frac;           /* G                                         */
+	double attenuation_cm2_g;	/* μ/ρ of the mixture at the line            */
+	double axial_frac;		/* h_eff/R                                   */
+	double aperture_rad;		/* Δ, one aperture along 2θ                   */
+	double counted_frac;		/* D(E)                                      */
+	double lit_frac;		/* G                                         */
 } bh_rate_terms;
 
 /* Integrated rate of a reflection of a flat specimen in one aperture, counts·rad/s:

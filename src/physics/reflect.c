@@ -58,7 +58,8 @@ static bool planes_of(bh_reflection **list, size_t *count, bh_arena *arena, size
 
 	if (phase->kind == BH_PHASE_LIST)
 		*count = phase->list_count;
-	else if (!bh_hkl_list(&planes, count, arena, &phase->cell, &phase->group, least_d_A, err))
+	else if (!bh_hkl_list(&planes, count, arena, &phase->cell, &phase->group,
+			      least_d_A, err))
 		return false;
 	*list = bh_new(arena, bh_reflection, *count);
 	if (!*list)
@@ -77,8 +78,8 @@ static bool planes_of(bh_reflection **list, size_t *count, bh_arena *arena, size
 	return true;
 }
 
-static bool fill_f2(bh_reflection *list, size_t count, bh_arena *arena, const bh_phase *phase,
-		    const bh_radiation *radiation, bh_err *err)
+static bool fill_f2(bh_reflection *list, size_t count, bh_arena *arena,
+		    const bh_phase *phase, const bh_radiation *radiation, bh_err *err)
 {
 	double energy_keV[BH_MAX_LINES], *d_A = bh_new(arena, double, count);
 	double *f2 = bh_new(arena, double, count * radiation->count);
@@ -93,8 +94,9 @@ static bool fill_f2(bh_reflection *list, size_t count, bh_arena *arena, const bh
 		d_A[i] = list[i].d_A;
 		memcpy(h[i], list[i].h, sizeof *h);
 	}
-	if (!bh_structure_f2_table(f2, arena, phase, (const int(*)[3])h, d_A, count, energy_keV,
-				   radiation->count, (bh_without){ false }, err))
+	if (!bh_structure_f2_table(f2, arena, phase, (const int(*)[3])h, d_A, count,
+				   energy_keV, radiation->count, (bh_without){ false },
+				   err))
 		return false;
 	if (!bh_cell_reciprocal(&reciprocal, &phase->cell))
 		return true; /* a cell that closes nothing was refused at reading */
@@ -110,7 +112,8 @@ static bool fill_f2(bh_reflection *list, size_t count, bh_arena *arena, const bh
 /* The strongest line of a list stands to corundum 1 1 3 as its corundum ratio, the others as
  * the list says, all at Cu Kα1; other wavelengths follow by λ³ and Lorentz-polarization.
  * The strength goes where |F|² of a phase with atoms goes: see bh_reflect_strength. */
-static bool fill_list(bh_reflection *list, const bh_phase *phase, bh_arena *arena, bh_err *err)
+static bool fill_list(bh_reflection *list, const bh_phase *phase, bh_arena *arena,
+		      bh_err *err)
 {
 	const bh_anode *copper = bh_anode_find("Cu");
 	double corundum, corundum_lp, most = 0;
@@ -126,8 +129,9 @@ static bool fill_list(bh_reflection *list, const bh_phase *phase, bh_arena *aren
 			continue;
 		lp = bh_geometry_lorentz_polarization(1, bh_rad(two_theta_deg / 2));
 		for (size_t k = 0; k < BH_MAX_LINES; k++)
-			list[i].f2_lines[k] = phase->corundum_ratio * corundum * corundum_lp /
-					      lp * phase->list_intensity[i] / most;
+			list[i].f2_lines[k] = phase->corundum_ratio * corundum *
+					      corundum_lp / lp *
+					      phase->list_intensity[i] / most;
 	}
 	return true;
 }
@@ -139,12 +143,14 @@ double bh_reflect_strength(const bh_reflection *reflection, const bh_phase *phas
 		return reflection->f2_lines[line];
 	if (!(phase->density_g_cm3 > 0) || !(phase->volume_A3 > 0))
 		return 0;
-	return reflection->multiplicity * reflection->texture * reflection->f2_lines[line] /
+	return reflection->multiplicity * reflection->texture *
+	       reflection->f2_lines[line] /
 	       (phase->volume_A3 * phase->volume_A3 * phase->density_g_cm3);
 }
 
-double bh_reflect_per_photon(const bh_signal *signal, double strength, double wavelength_A,
-			     double two_theta_deg, double attenuation_cm2_g)
+double bh_reflect_per_photon(const bh_signal *signal, double strength,
+			     double wavelength_A, double two_theta_deg,
+			     double attenuation_cm2_g)
 {
 	return bh_rates_integrated_cps_rad(&(bh_rate_terms){
 		.flux_s = 1,
@@ -170,8 +176,8 @@ static double pure_rate(const bh_signal *signal, const bh_scene *scene,
 	const bh_phase *phase = &scene->phases[r->phase];
 	bool holder = scene->has_holder && r->phase + 1 == scene->phase_count;
 	bh_lit lit = bh_lit_at(scene->request, &signal->setting, two_theta_deg);
-	double mu, thick = 1, areal = bh_observe_areal_g_cm2(scene->request,
-							     signal->density_g_cm3);
+	double mu, thick = 1,
+		   areal = bh_observe_areal_g_cm2(scene->request, signal->density_g_cm3);
 
 	mu = holder ? signal->holder_attenuation_cm2_g[line] : l->mass_attenuation_cm2_g;
 	if (!(mu > 0))
@@ -190,21 +196,23 @@ static void fill_rates(bh_signal *signal, const bh_scene *scene, bh_reflection *
 	const bh_instrument *instrument = scene->instrument;
 	const bh_line *first = &signal->radiation.lines[0];
 	const bh_phase *phase = &scene->phases[list->phase];
-	bool known = signal->rates_known && (phase->kind == BH_PHASE_ATOMS ||
-					     (phase->kind == BH_PHASE_LIST &&
-					      phase->corundum_ratio > 0));
+	bool known = signal->rates_known &&
+		     (phase->kind == BH_PHASE_ATOMS ||
+		      (phase->kind == BH_PHASE_LIST && phase->corundum_ratio > 0));
 	double most = 0;
 
 	for (size_t i = 0; i < count; i++) {
 		bh_reflection *r = &list[i];
 
 		r->rate_known = known;
-		if (!bh_bragg_two_theta_deg(&r->two_theta_deg, r->d_A, first->wavelength_A))
+		if (!bh_bragg_two_theta_deg(&r->two_theta_deg, r->d_A,
+					    first->wavelength_A))
 			continue;
 		r->in_range = r->two_theta_deg >= scene->request->two_theta_min_deg &&
 			      r->two_theta_deg <= scene->request->two_theta_max_deg;
 		r->fwhm_deg = bh_profile_line(instrument, phase, first->wavelength_A,
-					      r->two_theta_deg).fwhm_deg;
+					      r->two_theta_deg)
+				      .fwhm_deg;
 		r->relative = pure_rate(signal, scene, r, 0, r->two_theta_deg);
 		r->rate_cps_deg = known ? r->relative * phase->share_frac : 0;
 		if (r->two_theta_deg >= instrument->two_theta_min_deg &&
@@ -241,15 +249,18 @@ static int by_two_theta(const void *a, const void *b)
 	return p->line < q->line ? -1 : p->line > q->line;
 }
 
-static bool peaks_of(bh_signal *signal, bh_arena *arena, const bh_scene *scene, bh_err *err)
+static bool peaks_of(bh_signal *signal, bh_arena *arena, const bh_scene *scene,
+		     bh_err *err)
 {
 	/* a little beyond the arms' reach: tails come in from there */
 	double low_deg = scene->instrument->two_theta_min_deg - 1;
 	double high_deg = scene->instrument->two_theta_max_deg + 1;
 	const bh_radiation *radiation = &signal->radiation;
-	double least = 1e-9 * radiation->lines[0].flux_s * radiation->lines[0].detected_frac;
+	double least =
+		1e-9 * radiation->lines[0].flux_s * radiation->lines[0].detected_frac;
 
-	signal->peaks = bh_new(arena, bh_peak, signal->reflection_count * radiation->count);
+	signal->peaks =
+		bh_new(arena, bh_peak, signal->reflection_count * radiation->count);
 	if (!signal->peaks)
 		return bh_fail_memory(err);
 	for (size_t i = 0; i < signal->reflection_count; i++) {
@@ -262,17 +273,23 @@ static bool peaks_of(bh_signal *signal, bh_arena *arena, const bh_scene *scene, 
 			double at_deg;
 
 			if (line->flux_s * line->detected_frac < least ||
-			    !bh_bragg_two_theta_deg(&at_deg, r->d_A, line->wavelength_A) ||
+			    !bh_bragg_two_theta_deg(&at_deg, r->d_A,
+						    line->wavelength_A) ||
 			    at_deg < low_deg || at_deg > high_deg)
 				continue;
-			profile = bh_profile_line(scene->instrument, phase, line->wavelength_A,
-						  at_deg);
-			signal->peaks[signal->peak_count++] = (bh_peak){
-				i, k, at_deg, profile.fwhm_deg, profile.eta,
-				r->rate_known ? phase->share_frac *
-							pure_rate(signal, scene, r, k, at_deg)
-					      : 0
-			};
+			profile = bh_profile_line(scene->instrument, phase,
+						  line->wavelength_A, at_deg);
+			signal->peaks[signal->peak_count++] =
+				(bh_peak){ i,
+					   k,
+					   at_deg,
+					   profile.fwhm_deg,
+					   profile.eta,
+					   r->rate_known
+						   ? phase->share_frac *
+							     pure_rate(signal, scene, r,
+								       k, at_deg)
+						   : 0 };
 		}
 	}
 	qsort(signal->peaks, signal->peak_count, sizeof *signal->peaks, by_two_theta);
@@ -295,14 +312,15 @@ bool bh_reflect(bh_signal *signal, bh_arena *arena, const bh_scene *scene, bh_er
 
 		if (done && phase->kind == BH_PHASE_ATOMS)
 			done = fill_f2(list, count, arena, phase, radiation, err);
-		else if (done && phase->kind == BH_PHASE_LIST && phase->corundum_ratio > 0)
+		else if (done && phase->kind == BH_PHASE_LIST &&
+			 phase->corundum_ratio > 0)
 			done = fill_list(list, phase, arena, err);
 		if (!done)
 			return false;
 		if (count)
 			fill_rates(signal, scene, list, count);
-		signal->reflections = bh_grow(arena, signal->reflections, bh_reflection, old,
-					      old + count);
+		signal->reflections = bh_grow(arena, signal->reflections, bh_reflection,
+					      old, old + count);
 		if (!signal->reflections)
 			return bh_fail_memory(err);
 		if (count)

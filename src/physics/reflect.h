@@ -17,7 +17,8 @@ double bh_reflect_strength(const bh_reflection *reflection, const bh_phase *phas
 
 /* Integrated rate of a reflection at a line and angle from a body of areal_g_cm2 and
  * attenuation, per photon/s, with share 1: counts·rad/s. D and G are not in. */
-double bh_reflect_per_photon(const bh_signal *signal, double strength, double wavelength_A,
-			     double two_theta_deg, double attenuation_cm2_g);
+double bh_reflect_per_photon(const bh_signal *signal, double strength,
+			     double wavelength_A, double two_theta_deg,
+			     double attenuation_cm2_g);
 
 #endif

@@ -166,17 +166,33 @@ typedef struct {
 /* Images of one site, and how near is too near. */
 typedef struct {
 	bh_mat3 metric;
+	double spacing_A[3]; /* of the planes 1 0 0, 0 1 0, 0 0 1 */
 	double images[BH_MAX_IMAGES][3];
 	size_t count;
 	double within_A;
 } neighbours;
+
+/* Points apart by more than within_A along one axis, counted in its planes. */
+static bool far_apart(const neighbours *n, const double a[3], const double b[3])
+{
+	for (int j = 0; j < 3; j++) {
+		double x = a[j] - b[j];
+
+		if (fabs(x - round(x)) * n->spacing_A[j] >= n->within_A)
+			return true;
+	}
+	return false;
+}
 
 /* Add the images of site j to the surroundings of site i. */
 static void add_images(crowd *c, const bh_phase *phase, size_t i, size_t j,
 		       const neighbours *n)
 {
 	for (size_t k = 0; k < n->count; k++) {
-		double d_A = distance_A(&n->metric, phase->sites[i].at, n->images[k]);
+		const double *at = phase->sites[i].at;
+		double d_A = far_apart(n, at, n->images[k])
+				     ? HUGE_VAL
+				     : distance_A(&n->metric, at, n->images[k]);
 
 		if (d_A >= n->within_A)
 			continue;
@@ -191,7 +207,12 @@ static void add_images(crowd *c, const bh_phase *phase, size_t i, size_t j,
 static bool crowded(const bh_phase *phase, crowd *crowds, double within_A, size_t *i)
 {
 	neighbours n = { .metric = bh_cell_metric(&phase->cell), .within_A = within_A };
+	bh_mat3 reciprocal;
 
+	if (!bh_cell_reciprocal(&reciprocal, &phase->cell))
+		return false;
+	for (int j = 0; j < 3; j++)
+		n.spacing_A[j] = 1 / sqrt(reciprocal.at[j][j]);
 	for (*i = 0; *i < phase->site_count; ++*i)
 		crowds[*i] = (crowd){ 0, HUGE_VAL, *i };
 	for (size_t j = 0; j < phase->site_count; j++) {

@@ -17,8 +17,8 @@ double bh_tube_line_per_s_sr_mA(const bh_anode *anode, int kind, double kV,
 /* Continuum photons per second, steradian, milliampere and keV at an energy; 0 at and above
  * kV.
  *   from     the same paper: 1.35e9 Z (E0/E − 1)^x f(χ), x = 1.109 − 0.00435 Z + 0.00175 E0 */
-double bh_tube_continuum_per_s_sr_mA_keV(const bh_anode *anode, double energy_keV, double kV,
-					 double takeoff_deg);
+double bh_tube_continuum_per_s_sr_mA_keV(const bh_anode *anode, double energy_keV,
+					 double kV, double takeoff_deg);
 
 /* Share of photons of an energy that leave the anode: depth distribution of their birth and
  * absorption on the way out at the take-off angle.

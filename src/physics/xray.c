@@ -105,7 +105,8 @@ double bh_xray_group_keV(int z, bh_fl_group group)
 
 double bh_xray_fluorescence_cm2_g(int z, bh_fl_group group, double energy_keV)
 {
-	return known(z) ? CS_FluorLine_Kissel(z, groups[group].line, clamp_keV(energy_keV), NULL)
+	return known(z) ? CS_FluorLine_Kissel(z, groups[group].line,
+					      clamp_keV(energy_keV), NULL)
 			: 0;
 }
 

@@ -46,7 +46,8 @@ bool bh_words_cautions(bh_plan *plan, bh_err *err)
 		}
 	}
 	for (size_t k = 0; k < plan->request->amorphous.count; k++) {
-		const bh_hazard *hazard = bh_hazard_of(plan->request->amorphous.elements[k].z);
+		const bh_hazard *hazard =
+			bh_hazard_of(plan->request->amorphous.elements[k].z);
 
 		if (hazard && !named[hazard->z])
 			add(plan, "this specimen", hazard->text);

@@ -22,13 +22,16 @@ static bool about_throughput(bh_plan *plan, bh_err *err)
 
 	if (!(tube->throughput_factor > 1))
 		return true;
-	return add(plan,
-		   bh_arena_format(plan->arena,
-				   "Throughput of the %s tube (%.3g) has not been measured on this "
-				   "machine: every rate and time is good to a factor %.2g either way. "
-				   "Begin with the scout scan.",
-				   tube->anode->symbol, tube->throughput, tube->throughput_factor),
-		   err);
+	return add(
+		plan,
+		bh_arena_format(
+			plan->arena,
+			"Throughput of the %s tube (%.3g) has not been measured on this "
+			"machine: every rate and time is good to a factor %.2g either "
+			"way. "
+			"Begin with the scout scan.",
+			tube->anode->symbol, tube->throughput, tube->throughput_factor),
+		err);
 }
 
 static bool about_anodes(bh_plan *plan, bh_err *err)
@@ -37,14 +40,16 @@ static bool about_anodes(bh_plan *plan, bh_err *err)
 
 	for (size_t i = 0; i < plan->request->anode_count && others; i++)
 		if (plan->request->anodes[i] != plan->signal.setting.tube->anode)
-			others = bh_arena_format(plan->arena, "%s%s%s", others, *others ? ", " : "",
+			others = bh_arena_format(plan->arena, "%s%s%s", others,
+						 *others ? ", " : "",
 						 plan->request->anodes[i]->symbol);
 	if (!others)
 		return bh_fail_memory(err);
 	return !*others ||
 	       add(plan,
 		   bh_arena_format(plan->arena,
-				   "Planned for %s, the first anode asked for. Also on offer: %s; plan "
+				   "Planned for %s, the first anode asked for. Also on "
+				   "offer: %s; plan "
 				   "again with --anode to weigh them.",
 				   plan->signal.setting.tube->anode->symbol, others),
 		   err);
@@ -61,15 +66,16 @@ static bool about_displacement_b(bh_plan *plan, bh_err *err)
 		for (size_t k = 0; k < phase->site_count; k++)
 			missing = missing || !phase->sites[k].b_known;
 		if (missing)
-			names = bh_arena_format(plan->arena, "%s%s%s", names, *names ? ", " : "",
-						phase->name);
+			names = bh_arena_format(plan->arena, "%s%s%s", names,
+						*names ? ", " : "", phase->name);
 	}
 	if (!names)
 		return bh_fail_memory(err);
 	return !*names ||
 	       add(plan,
 		   bh_arena_format(plan->arena,
-				   "B = %.1f Å² where the request gives none (%s): strong at high "
+				   "B = %.1f Å² where the request gives none (%s): "
+				   "strong at high "
 				   "angle, there intensities may be off by 20 %%.",
 				   BH_B_ISO_DEFAULT_A2, names),
 		   err);
@@ -82,15 +88,17 @@ static bool about_phases(bh_plan *plan, bh_err *err)
 		const char *note = NULL;
 
 		if (phase->kind == BH_PHASE_LIST && phase->corundum_ratio > 0)
-			note = bh_arena_format(plan->arena,
-					       "Rates of %s come from its corundum ratio %.3g: good to "
-					       "±20 %%.",
-					       phase->name, phase->corundum_ratio);
+			note = bh_arena_format(
+				plan->arena,
+				"Rates of %s come from its corundum ratio %.3g: good to "
+				"±20 %%.",
+				phase->name, phase->corundum_ratio);
 		else if (phase->kind != BH_PHASE_ATOMS)
-			note = bh_arena_format(plan->arena,
-					       "%s has no atoms: positions only, its lines take no part "
-					       "in overlap prices or count times.",
-					       phase->name);
+			note = bh_arena_format(
+				plan->arena,
+				"%s has no atoms: positions only, its lines take no part "
+				"in overlap prices or count times.",
+				phase->name);
 		else
 			continue;
 		if (!add(plan, note, err))
@@ -105,17 +113,22 @@ static bool about_model(bh_plan *plan, bh_err *err)
 
 	if (!plan->signal.rates_known &&
 	    !add(plan,
-		 "The specimen's composition or a density is not known: no rates, no count times, "
+		 "The specimen's composition or a density is not known: no rates, no "
+		 "count times, "
 		 "no fluorescence. Give formula and density to the phases without atoms.",
 		 err))
 		return false;
 	if (request->amorphous_frac > 0 && request->amorphous.count == 0 &&
-	    !add(plan, "The amorphous part counts with the composition of the crystalline mixture.",
+	    !add(plan,
+		 "The amorphous part counts with the composition of the crystalline "
+		 "mixture.",
 		 err))
 		return false;
 	return add(plan,
-		   "Form factors are those of neutral atoms; f′ and f″ are good to 0.05 electrons, "
-		   "0.3 near an edge. Grains are taken as randomly oriented unless march is given.",
+		   "Form factors are those of neutral atoms; f′ and f″ are good to 0.05 "
+		   "electrons, "
+		   "0.3 near an edge. Grains are taken as randomly oriented unless march "
+		   "is given.",
 		   err);
 }
 

@@ -43,7 +43,8 @@ static bool build_holder(bh_phase *phase, bh_arena *arena, const bh_holder *hold
 				     .occupancy = 1,
 				     .b_iso_A2 = holder->b_iso_A2,
 				     .b_known = true };
-	return bh_symmetry_find(&phase->group, &origin_open, arena, holder->space_group, err) &&
+	return bh_symmetry_find(&phase->group, &origin_open, arena, holder->space_group,
+				err) &&
 	       bh_structure_resolve(phase, arena, err);
 }
 
@@ -57,9 +58,10 @@ static bool gather_phases(bh_plan *plan, bh_err *err)
 	plan->phases = bh_new(plan->arena, bh_phase, plan->phase_count);
 	if (!plan->phases)
 		return bh_fail_memory(err);
-	memcpy(plan->phases, request->phases, request->phase_count * sizeof *plan->phases);
-	return !plan->has_holder ||
-	       build_holder(&plan->phases[request->phase_count], plan->arena, holder, err);
+	memcpy(plan->phases, request->phases,
+	       request->phase_count * sizeof *plan->phases);
+	return !plan->has_holder || build_holder(&plan->phases[request->phase_count],
+						 plan->arena, holder, err);
 }
 
 static bh_scene scene_of(const bh_plan *plan)
@@ -71,12 +73,15 @@ static bh_scene scene_of(const bh_plan *plan)
 			   .has_holder = plan->has_holder };
 }
 
-bool bh_plan_observe(bh_plan *plan, bh_arena *arena, const bh_request *request, bh_err *err)
+bool bh_plan_observe(bh_plan *plan, bh_arena *arena, const bh_request *request,
+		     bh_err *err)
 {
 	bh_setting setting = bh_observe_usual(request->instrument, tube_of(request));
 	bh_scene scene;
 
-	*plan = (bh_plan){ .arena = arena, .request = request, .instrument = request->instrument };
+	*plan = (bh_plan){ .arena = arena,
+			   .request = request,
+			   .instrument = request->instrument };
 	if (!gather_phases(plan, err))
 		return false;
 	scene = scene_of(plan);
@@ -108,15 +113,16 @@ bool bh_plan_make(bh_plan *plan, bh_arena *arena, const bh_request *request, bh_
 {
 	bh_scene scene;
 
-	if (!bh_plan_observe(plan, arena, request, err)) /* where peaks fall, how strong */
+	if (!bh_plan_observe(plan, arena, request,
+			     err)) /* where peaks fall, how strong */
 		return false;
 	scene = scene_of(plan);
-	return draw(plan, err)                         /* the whole curve              */
-	       && bh_design(plan, &scene, err)         /* step, ranges, times, errors  */
-	       && bh_findings_all(plan, &scene, err)   /* what can go wrong            */
-	       && bh_words_notes(plan, err)            /* what was assumed             */
-	       && bh_words_why(plan, &scene, err)      /* where numbers come from      */
-	       && bh_words_cautions(plan, err);        /* what keeps people safe       */
+	return draw(plan, err)			     /* the whole curve              */
+	       && bh_design(plan, &scene, err)	     /* step, ranges, times, errors  */
+	       && bh_findings_all(plan, &scene, err) /* what can go wrong            */
+	       && bh_words_notes(plan, err)	     /* what was assumed             */
+	       && bh_words_why(plan, &scene, err)    /* where numbers come from      */
+	       && bh_words_cautions(plan, err);	     /* what keeps people safe       */
 }
 
 bool bh_plan_wants_attention(const bh_plan *plan)

@@ -16,7 +16,8 @@
 bool bh_plan_make(bh_plan *plan, bh_arena *arena, const bh_request *request, bh_err *err);
 
 /* Only what the machine sees: reflections, peaks, background. For lists. */
-bool bh_plan_observe(bh_plan *plan, bh_arena *arena, const bh_request *request, bh_err *err);
+bool bh_plan_observe(bh_plan *plan, bh_arena *arena, const bh_request *request,
+		     bh_err *err);
 
 /* Whether the plan asks for attention: an aim not met or not reachable by counting, or a
  * severe finding. */

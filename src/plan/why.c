@@ -34,68 +34,78 @@ static bool radiation(bh_plan *plan, bh_err *err)
 			     s->tube->anode->source },
 		   err) &&
 	       add(plan,
-		   (bh_why){
-			   "Kα1 photons at the specimen", say(plan, "%.4g /s", line->flux_s),
-			   "Φ = N · mA · δ · axial · throughput · window · foil · path; N = 5e13 (1/S) R ω p f(χ)",
-			   say(plan,
-			       "N = %.4g /(s sr mA) at %.3g kV, %.3g mA, δ = %.3g°, throughput %.3g",
-			       bh_tube_line_per_s_sr_mA(s->tube->anode, BH_KA1, s->kV,
-							s->tube->takeoff_deg),
-			       s->kV, s->mA, s->divergence_deg, s->tube->throughput),
-			   "H. Ebel, X-Ray Spectrom. 28 (1999) 255; coefficients from memory" },
+		   (bh_why){ "Kα1 photons at the specimen",
+			     say(plan, "%.4g /s", line->flux_s),
+			     "Φ = N · mA · δ · axial · throughput · window · foil · "
+			     "path; N = 5e13 (1/S) R ω p f(χ)",
+			     say(plan,
+				 "N = %.4g /(s sr mA) at %.3g kV, %.3g mA, δ = %.3g°, "
+				 "throughput %.3g",
+				 bh_tube_line_per_s_sr_mA(s->tube->anode, BH_KA1, s->kV,
+							  s->tube->takeoff_deg),
+				 s->kV, s->mA, s->divergence_deg, s->tube->throughput),
+			     "H. Ebel, X-Ray Spectrom. 28 (1999) 255; coefficients from "
+			     "memory" },
 		   err) &&
 	       add(plan,
-		   (bh_why){ "share of Kα1 counted, D", say(plan, "%.4f", line->detected_frac),
+		   (bh_why){ "share of Kα1 counted, D",
+			     say(plan, "%.4f", line->detected_frac),
 			     "D = path · foil · η0 (1 − exp(−μ t)) · window",
-			     say(plan, "E = %.4f keV, window %.2f to %.2f keV", line->energy_keV,
-				 s->window_low_keV, s->window_high_keV),
+			     say(plan, "E = %.4f keV, window %.2f to %.2f keV",
+				 line->energy_keV, s->window_low_keV, s->window_high_keV),
 			     "attenuation: xraylib, Spectrochim. Acta B 66 (2011) 776" },
 		   err) &&
 	       add(plan,
 		   (bh_why){ "attenuation of the mixture",
-			     plan->signal.rates_known
-				     ? say(plan, "%.4g cm²/g", line->mass_attenuation_cm2_g)
-				     : "not known",
-			     "μ/ρ = Σ w (μ/ρ)_i", say(plan, "E = %.4f keV", line->energy_keV),
+			     plan->signal.rates_known ? say(plan, "%.4g cm²/g",
+							    line->mass_attenuation_cm2_g)
+						      : "not known",
+			     "μ/ρ = Σ w (μ/ρ)_i",
+			     say(plan, "E = %.4f keV", line->energy_keV),
 			     "xraylib, CS_Total" },
 		   err);
 }
 
-static bool target(bh_plan *plan, const bh_scene *scene, const bh_target_result *t, bh_err *err)
+static bool target(bh_plan *plan, const bh_scene *scene, const bh_target_result *t,
+		   bh_err *err)
 {
 	const bh_reflection *r = &plan->signal.reflections[t->reflection];
 	const bh_phase *phase = &plan->phases[t->phase];
 	const bh_line *line = &plan->signal.radiation.lines[0];
 	double theta = bh_rad(r->two_theta_deg / 2);
-	const char *name = say(plan, "%s %s", phase->name, phase->targets[t->target].text);
+	const char *name =
+		say(plan, "%s %s", phase->name, phase->targets[t->target].text);
 	bh_lit lit = bh_lit_at(scene->request, &plan->signal.setting, r->two_theta_deg);
 
 	if (!name)
 		return bh_fail_memory(err);
 	if (!add(plan,
-		 (bh_why){ say(plan, "2θ of %s", name), say(plan, "%.4f°", r->two_theta_deg),
-			   "λ = 2 d sinθ",
-			   say(plan, "d = %.5f Å, λ = %.7f Å", r->d_A, line->wavelength_A),
-			   "W. L. Bragg, Proc. Camb. Phil. Soc. 17 (1913) 43" },
+		 (bh_why){
+			 say(plan, "2θ of %s", name),
+			 say(plan, "%.4f°", r->two_theta_deg), "λ = 2 d sinθ",
+			 say(plan, "d = %.5f Å, λ = %.7f Å", r->d_A, line->wavelength_A),
+			 "W. L. Bragg, Proc. Camb. Phil. Soc. 17 (1913) 43" },
 		 err))
 		return false;
 	if (!t->rate_known || !(t->rate_cps_deg > 0))
 		return true;
 	return add(plan,
-		   (bh_why){
-			   say(plan, "rate of %s, Kα1, one aperture", name),
-			   say(plan, "%.4g counts·°/s", r->rate_cps_deg),
-			   "I = Φ r_e² λ³ m|F|²/v² · P · 2/(sinθ sin2θ) · (w/ρ)/(2μ/ρ) · (h/R)/16π · Δ · D · G",
-			   say(plan,
-			       "m|F|²/(v²ρ) = %.4g cm³/(g Å⁶), P·2/(sinθ sin2θ) = %.4g, w = %.4g, "
-			       "μ/ρ = %.4g cm²/g, h/R = %.4g, Δ = %.4g°, D = %.4g, lit = %.4g",
-			       bh_reflect_strength(r, phase, 0),
-			       bh_geometry_lorentz_polarization(plan->signal.radiation.polarization,
-								theta),
-			       phase->share_frac, line->mass_attenuation_cm2_g,
-			       plan->signal.axial_frac, plan->signal.aperture_deg,
-			       line->detected_frac, lit.specimen_frac),
-			   "B. E. Warren, X-ray Diffraction (1969), ch. 4" },
+		   (bh_why){ say(plan, "rate of %s, Kα1, one aperture", name),
+			     say(plan, "%.4g counts·°/s", r->rate_cps_deg),
+			     "I = Φ r_e² λ³ m|F|²/v² · P · 2/(sinθ sin2θ) · (w/ρ)/(2μ/ρ) "
+			     "· (h/R)/16π · Δ · D · G",
+			     say(plan,
+				 "m|F|²/(v²ρ) = %.4g cm³/(g Å⁶), P·2/(sinθ sin2θ) = "
+				 "%.4g, w = %.4g, "
+				 "μ/ρ = %.4g cm²/g, h/R = %.4g, Δ = %.4g°, D = %.4g, lit "
+				 "= %.4g",
+				 bh_reflect_strength(r, phase, 0),
+				 bh_geometry_lorentz_polarization(
+					 plan->signal.radiation.polarization, theta),
+				 phase->share_frac, line->mass_attenuation_cm2_g,
+				 plan->signal.axial_frac, plan->signal.aperture_deg,
+				 line->detected_frac, lit.specimen_frac),
+			     "B. E. Warren, X-ray Diffraction (1969), ch. 4" },
 		   err);
 }
 
@@ -111,18 +121,21 @@ static bool error_of(bh_plan *plan, const bh_scene *scene, const bh_target_resul
 	bh_view_make(&v, &plan->signal, scene, t->reflection);
 	net = bh_view_net_variance(&background_deg, &v);
 	return add(plan,
-		   (bh_why){
-			   say(plan, "area error of %s %s", phase->name,
-			       phase->targets[t->target].text),
-			   say(plan, "%.3g %%", 100 * t->predicted_error_frac),
-			   "σ² = 1/N_eff + price · [P + B w_P/w_B]/N², w_B = w_P √(rate_B/rate_P)",
-			   say(plan,
-			       "N = %.4g net counts, background %.4g counts/s, w_P = %.3f°, w_B = "
-			       "%.3f°, σ²·ε = %.3g s/°, price %.3g, N_eff = %.3g",
-			       t->expected_counts, v.background_cps, v.high_deg - v.low_deg,
-			       background_deg, net, t->overlap_price, t->grains),
-			   "Poisson counts; ITC C (2004), 7.5.7; grains: Alexander, Klug & Kummer "
-			   "1948" },
+		   (bh_why){ say(plan, "area error of %s %s", phase->name,
+				 phase->targets[t->target].text),
+			     say(plan, "%.3g %%", 100 * t->predicted_error_frac),
+			     "σ² = 1/N_eff + price · [P + B w_P/w_B]/N², w_B = w_P "
+			     "√(rate_B/rate_P)",
+			     say(plan,
+				 "N = %.4g net counts, background %.4g counts/s, w_P = "
+				 "%.3f°, w_B = "
+				 "%.3f°, σ²·ε = %.3g s/°, price %.3g, N_eff = %.3g",
+				 t->expected_counts, v.background_cps,
+				 v.high_deg - v.low_deg, background_deg, net,
+				 t->overlap_price, t->grains),
+			     "Poisson counts; ITC C (2004), 7.5.7; grains: Alexander, "
+			     "Klug & Kummer "
+			     "1948" },
 		   err);
 }
 

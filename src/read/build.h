@@ -9,8 +9,8 @@
 
 /* From checked sections to the model. Each notes every problem it finds; false: some. */
 
-bool bh_build_instrument(bh_instrument *instrument, bh_arena *arena, const bh_conf_section *root,
-			 bh_problems *problems);
+bool bh_build_instrument(bh_instrument *instrument, bh_arena *arena,
+			 const bh_conf_section *root, bh_problems *problems);
 
 /* A phase with all it needs to be computed; share_frac −1 when the file gives none. */
 bool bh_build_phase(bh_phase *phase, bh_arena *arena, const bh_conf_section *section,

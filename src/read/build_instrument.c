@@ -48,8 +48,9 @@ static bool pair(double *low, double *high, const part *p, const char *key)
 	const bh_conf_entry *entry = bh_conf_entry_of(p->s, key);
 
 	if (entry->count != 2 || !(entry->values[0].number < entry->values[1].number))
-		return bh_problem(p->problems, entry->place,
-				  "\"%s\" is not {low, high}\ntwo values, the lower first", key);
+		return bh_problem(
+			p->problems, entry->place,
+			"\"%s\" is not {low, high}\ntwo values, the lower first", key);
 	*low = entry->values[0].number;
 	*high = entry->values[1].number;
 	return true;
@@ -59,8 +60,9 @@ static bool pair(double *low, double *high, const part *p, const char *key)
 static bool needs(const part *p, const char *key, const char *because)
 {
 	return bh_conf_entry_of(p->s, key) ||
-	       bh_problem(p->problems, p->s->place, "\"%s\" has no \"%s\"\nit is needed with %s",
-			  p->name, key, because);
+	       bh_problem(p->problems, p->s->place,
+			  "\"%s\" has no \"%s\"\nit is needed with %s", p->name, key,
+			  because);
 }
 
 static bool element(int *z, const part *p, const char *key)
@@ -69,12 +71,15 @@ static bool element(int *z, const part *p, const char *key)
 	if (!*text(p, key))
 		return true;
 	*z = bh_xray_z(text(p, key));
-	return *z || bh_problem(p->problems, place_of(p, key),
-				"\"%s\" is \"%s\", no element\nallowed: symbols H to U, like Ni", key,
-				text(p, key));
+	return *z ||
+	       bh_problem(
+		       p->problems, place_of(p, key),
+		       "\"%s\" is \"%s\", no element\nallowed: symbols H to U, like Ni",
+		       key, text(p, key));
 }
 
-static bool goniometer(bh_instrument *to, const bh_conf_section *root, bh_problems *problems)
+static bool goniometer(bh_instrument *to, const bh_conf_section *root,
+		       bh_problems *problems)
 {
 	part p = part_of(root, "goniometer", problems);
 
@@ -95,9 +100,10 @@ static bool crystal(bh_monochromator *to, const part *p)
 	to->reflectivity = number(p, "monochromator_reflectivity");
 	to->ka1_only = number(p, "ka1_only") > 0;
 	if (to->ka1_only && (!(to->two_theta_deg > 0) || to->side != BH_SIDE_TUBE))
-		return bh_problem(p->problems, place_of(p, "ka1_only"),
-				  "\"ka1_only\" needs a monochromator on the tube's side\ngive "
-				  "monochromator = angle and monochromator_side = \"tube\"");
+		return bh_problem(
+			p->problems, place_of(p, "ka1_only"),
+			"\"ka1_only\" needs a monochromator on the tube's side\ngive "
+			"monochromator = angle and monochromator_side = \"tube\"");
 	return true;
 }
 
@@ -106,14 +112,20 @@ static bool generator(const bh_tube *to, const part *p)
 	bool good = true;
 
 	if (to->kV > to->most_kV)
-		good = bh_problem(p->problems, place_of(p, "kV"), "\"kV\" is %g\nallowed: up to most_kV "
-				  "= %g", to->kV, to->most_kV);
+		good = bh_problem(p->problems, place_of(p, "kV"),
+				  "\"kV\" is %g\nallowed: up to most_kV "
+				  "= %g",
+				  to->kV, to->most_kV);
 	if (to->mA > to->most_mA)
-		good = bh_problem(p->problems, place_of(p, "mA"), "\"mA\" is %g\nallowed: up to most_mA "
-				  "= %g", to->mA, to->most_mA);
+		good = bh_problem(p->problems, place_of(p, "mA"),
+				  "\"mA\" is %g\nallowed: up to most_mA "
+				  "= %g",
+				  to->mA, to->most_mA);
 	if (to->kV * to->mA > to->most_W * (1 + 1e-9))
-		good = bh_problem(p->problems, place_of(p, "mA"), "%g kV and %g mA are %g W\nallowed: up "
-				  "to most_W = %g", to->kV, to->mA, to->kV * to->mA, to->most_W);
+		good = bh_problem(p->problems, place_of(p, "mA"),
+				  "%g kV and %g mA are %g W\nallowed: up "
+				  "to most_W = %g",
+				  to->kV, to->mA, to->kV * to->mA, to->most_W);
 	return good;
 }
 
@@ -131,8 +143,9 @@ static bool tube(bh_tube *to, const bh_conf_section *s, bh_problems *problems)
 			 bh_anodes[i].symbol);
 	}
 	if (!to->anode)
-		return bh_problem(problems, s->title_place, "no such anode: \"%.40s\"\nallowed: %s",
-				  s->title, list);
+		return bh_problem(problems, s->title_place,
+				  "no such anode: \"%.40s\"\nallowed: %s", s->title,
+				  list);
 	to->most_kV = number(&p, "most_kV");
 	to->most_mA = number(&p, "most_mA");
 	to->most_W = number(&p, "most_W");
@@ -142,7 +155,7 @@ static bool tube(bh_tube *to, const bh_conf_section *s, bh_problems *problems)
 	to->focus_mm = number(&p, "focus_mm");
 	to->window_um = number(&p, "window_um");
 	to->foil_side = strcmp(text(&p, "foil_side"), "tube") == 0 ? BH_SIDE_TUBE
-								    : BH_SIDE_DETECTOR;
+								   : BH_SIDE_DETECTOR;
 	to->foil_um = number_or_0(&p, "foil_um");
 	to->throughput = number(&p, "throughput");
 	to->throughput_factor = number(&p, "throughput_factor");
@@ -164,7 +177,8 @@ static bool tubes(bh_instrument *to, const bh_conf_section *root, bh_problems *p
 		if (strcmp(s->name, "tube") != 0)
 			continue;
 		if (to->tube_count == BH_MAX_TUBES)
-			return bh_problem(problems, s->place, "more than %d tubes\ntake some out",
+			return bh_problem(problems, s->place,
+					  "more than %d tubes\ntake some out",
 					  BH_MAX_TUBES);
 		good = tube(&to->tubes[to->tube_count++], s, problems) && good;
 	}
@@ -189,23 +203,27 @@ static bool slits(bh_instrument *to, const bh_conf_section *root, bh_problems *p
 	to->soller_detector_deg = number_or_0(&p, "soller_detector");
 	to->usual_divergence_deg = number_or_0(&p, "usual");
 	if (!offered && !(to->automatic_length_mm > 0))
-		return bh_problem(problems, p.s->place, "\"slits\" offers no divergence\ngive divergence "
+		return bh_problem(problems, p.s->place,
+				  "\"slits\" offers no divergence\ngive divergence "
 				  "= {...} and usual, or automatic_length_mm");
 	if (!offered)
 		return true;
 	if (offered->count > BH_MAX_SLITS)
-		return bh_problem(problems, offered->place, "more than %d slits\ntake some out",
-				  BH_MAX_SLITS);
+		return bh_problem(problems, offered->place,
+				  "more than %d slits\ntake some out", BH_MAX_SLITS);
 	for (size_t i = 0; i < offered->count; i++)
 		to->divergence_deg[to->divergence_count++] = offered->values[i].number;
-	qsort(to->divergence_deg, to->divergence_count, sizeof *to->divergence_deg, ascending);
+	qsort(to->divergence_deg, to->divergence_count, sizeof *to->divergence_deg,
+	      ascending);
 	if (!needs(&p, "usual", "divergence"))
 		return false;
 	for (size_t i = 0; i < to->divergence_count; i++)
 		if (fabs(to->divergence_deg[i] - to->usual_divergence_deg) < 1e-9)
 			return true;
-	return bh_problem(problems, place_of(&p, "usual"), "\"usual\" is %g\nallowed: one of "
-			  "\"divergence\"", to->usual_divergence_deg);
+	return bh_problem(problems, place_of(&p, "usual"),
+			  "\"usual\" is %g\nallowed: one of "
+			  "\"divergence\"",
+			  to->usual_divergence_deg);
 }
 
 static bool detector(bh_instrument *instrument, const bh_conf_section *root,
@@ -236,7 +254,8 @@ static bool detector(bh_instrument *instrument, const bh_conf_section *root,
 		good = needs(&p, "sensor_um", "sensor") && good;
 	good = pair(&to->window_low_frac, &to->window_high_frac, &p, "window") && good;
 	if (good && !(to->window_low_frac < 1 && to->window_high_frac > 1))
-		good = bh_problem(problems, place_of(&p, "window"), "\"window\" leaves Kα out\nit must "
+		good = bh_problem(problems, place_of(&p, "window"),
+				  "\"window\" leaves Kα out\nit must "
 				  "hold 1, the Kα energy, like {0.75, 1.25}");
 	return good;
 }
@@ -263,12 +282,13 @@ static bool profile(bh_instrument *to, const bh_conf_section *root, bh_problems 
 	for (double t = 0.02; t < 6; t *= 1.05) { /* tanθ from 2θ = 2.3° to 161° */
 		double square = to->gauss_tan2_deg2 * t * t + to->gauss_tan_deg2 * t +
 				to->gauss_0_deg2;
-		double lorentz = to->lorentz_tan_deg * t +
-				 to->lorentz_sec_deg * sqrt(1 + t * t);
+		double lorentz =
+			to->lorentz_tan_deg * t + to->lorentz_sec_deg * sqrt(1 + t * t);
 
 		if (square < 0 || !(square > 0 || lorentz > 0))
 			return bh_problem(problems, p.s->place,
-					  "the widths leave no line at 2θ = %.0f°\nGaussian² must stay "
+					  "the widths leave no line at 2θ = "
+					  "%.0f°\nGaussian² must stay "
 					  "≥ 0 and the line wider than 0 everywhere",
 					  2 * atan(t) * 180 / 3.14159265358979);
 	}
@@ -286,8 +306,10 @@ static bool blank(bh_instrument *to, bh_arena *arena, const bh_conf_section *roo
 	x = bh_conf_entry_of(p.s, "two_theta");
 	y = bh_conf_entry_of(p.s, "rate");
 	if (x->count != y->count)
-		return bh_problem(problems, y->place, "\"rate\" has %zu values, \"two_theta\" has %zu\n"
-				  "give one for each angle", y->count, x->count);
+		return bh_problem(problems, y->place,
+				  "\"rate\" has %zu values, \"two_theta\" has %zu\n"
+				  "give one for each angle",
+				  y->count, x->count);
 	to->blank_two_theta_deg = bh_new(arena, double, x->count);
 	to->blank_cps = bh_new(arena, double, x->count);
 	if (!to->blank_two_theta_deg || !to->blank_cps) {
@@ -296,7 +318,8 @@ static bool blank(bh_instrument *to, bh_arena *arena, const bh_conf_section *roo
 	}
 	for (size_t i = 0; i < x->count; i++) {
 		if (i && !(x->values[i].number > x->values[i - 1].number))
-			return bh_problem(problems, x->values[i].place, "the angles of \"blank\" do not "
+			return bh_problem(problems, x->values[i].place,
+					  "the angles of \"blank\" do not "
 					  "rise\ngive them in order");
 		to->blank_two_theta_deg[i] = x->values[i].number;
 		to->blank_cps[i] = y->values[i].number;
@@ -305,9 +328,11 @@ static bool blank(bh_instrument *to, bh_arena *arena, const bh_conf_section *roo
 	return true;
 }
 
-static void overhead(bh_instrument *to, const bh_conf_section *root, bh_problems *problems)
+static void overhead(bh_instrument *to, const bh_conf_section *root,
+		     bh_problems *problems)
 {
-	part p = part_of(root, "overhead", problems), c = part_of(root, "continuum", problems);
+	part p = part_of(root, "overhead", problems),
+	     c = part_of(root, "continuum", problems);
 
 	to->warm_up_s = number(&p, "warm_up_s");
 	to->reference_check_s = number(&p, "reference_check_s");
@@ -317,8 +342,8 @@ static void overhead(bh_instrument *to, const bh_conf_section *root, bh_problems
 	to->continuum_factor = number(&c, "factor");
 }
 
-bool bh_build_instrument(bh_instrument *instrument, bh_arena *arena, const bh_conf_section *root,
-			 bh_problems *problems)
+bool bh_build_instrument(bh_instrument *instrument, bh_arena *arena,
+			 const bh_conf_section *root, bh_problems *problems)
 {
 	part path = part_of(root, "path", problems);
 	bool good;

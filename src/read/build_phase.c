@@ -41,16 +41,17 @@ static bool read_element(int *z, const bh_conf_value *value, bh_problems *proble
 		if (bh_xray_symbol(i)[0] == value->text[0])
 			bh_suggest(&near, value->text, bh_xray_symbol(i));
 	return bh_problem(problems, value->place,
-			  "\"%s\" is no element\n%s%s%sallowed: symbols H to U, like Fe", value->text,
-			  near.word ? "did you mean \"" : "", near.word ? near.word : "",
-			  near.word ? "\"? " : "");
+			  "\"%s\" is no element\n%s%s%sallowed: symbols H to U, like Fe",
+			  value->text, near.word ? "did you mean \"" : "",
+			  near.word ? near.word : "", near.word ? "\"? " : "");
 }
 
 static bool build_site(bh_site *site, const bh_conf_section *s, bh_problems *problems)
 {
 	const bh_conf_entry *at = bh_conf_entry_of(s, "at");
 	double b = bh_conf_number(BH_FILE_REQUEST, s, "site", "b_iso");
-	bool good = read_element(&site->z, &bh_conf_entry_of(s, "element")->values[0], problems);
+	bool good = read_element(&site->z, &bh_conf_entry_of(s, "element")->values[0],
+				 problems);
 
 	snprintf(site->label, sizeof site->label, "%s", s->title);
 	site->place = s->place;
@@ -58,7 +59,8 @@ static bool build_site(bh_site *site, const bh_conf_section *s, bh_problems *pro
 	site->b_known = isfinite(b);
 	site->b_iso_A2 = site->b_known ? b : BH_B_ISO_DEFAULT_A2;
 	if (at->count != 3)
-		return bh_problem(problems, at->place, "\"at\" has %zu values\nit needs 3: {x, y, z}",
+		return bh_problem(problems, at->place,
+				  "\"at\" has %zu values\nit needs 3: {x, y, z}",
 				  at->count);
 	for (int i = 0; i < 3; i++)
 		site->at[i] = at->values[i].number;
@@ -76,8 +78,9 @@ static bool build_sites(bh_phase *phase, bh_arena *arena, const bh_conf_section 
 		return false;
 	}
 	for (size_t i = 0; i < section->section_count; i++)
-		good = build_site(&phase->sites[phase->site_count++], section->sections[i],
-				  problems) && good;
+		good = build_site(&phase->sites[phase->site_count++],
+				  section->sections[i], problems) &&
+		       good;
 	return good;
 }
 
@@ -102,7 +105,8 @@ static const char *system_name(int number)
 }
 
 /* The short forms of a cell: 1, 2, 3 or 6 values by crystal system. */
-static bool spread_cell(double cell[6], const bh_space_group *group, const bh_conf_entry *given)
+static bool spread_cell(double cell[6], const bh_space_group *group,
+			const bh_conf_entry *given)
 {
 	size_t n = given->count;
 	int system = group->number;
@@ -130,7 +134,8 @@ static bool spread_cell(double cell[6], const bh_space_group *group, const bh_co
 	return true;
 }
 
-static bool check_cell(const bh_phase *phase, const bh_conf_entry *given, bh_problems *problems)
+static bool check_cell(const bh_phase *phase, const bh_conf_entry *given,
+		       bh_problems *problems)
 {
 	const double angles[3] = { phase->cell.alpha_deg, phase->cell.beta_deg,
 				   phase->cell.gamma_deg };
@@ -139,35 +144,45 @@ static bool check_cell(const bh_phase *phase, const bh_conf_entry *given, bh_pro
 
 	for (int i = 0; i < 3; i++) {
 		if (!(angles[i] >= 10 && angles[i] <= 170))
-			return bh_problem(problems, given->place,
-					  "an angle of the cell is %g°\nallowed: 10 to 170", angles[i]);
+			return bh_problem(
+				problems, given->place,
+				"an angle of the cell is %g°\nallowed: 10 to 170",
+				angles[i]);
 		if (!(edges[i] >= 0.5 && edges[i] <= 500))
-			return bh_problem(problems, given->place,
-					  "an edge of the cell is %g Å\nallowed: 0.5 to 500", edges[i]);
+			return bh_problem(
+				problems, given->place,
+				"an edge of the cell is %g Å\nallowed: 0.5 to 500",
+				edges[i]);
 	}
 	if (!(bh_cell_volume_A3(&phase->cell) > 0))
 		return bh_problem(problems, given->place,
-				  "these angles close no cell: %g, %g, %g°\neach must be less than the "
-				  "sum of the other two, all three less than 360", angles[0], angles[1],
-				  angles[2]);
+				  "these angles close no cell: %g, %g, %g°\neach must be "
+				  "less than the "
+				  "sum of the other two, all three less than 360",
+				  angles[0], angles[1], angles[2]);
 	misfit = bh_symmetry_misfit(&phase->group, &phase->cell);
 	if (misfit > 1e-3)
 		return bh_problem(problems, given->place,
-				  "this cell does not have the symmetry of %s (off by %.2g)\na %s cell "
+				  "this cell does not have the symmetry of %s (off by "
+				  "%.2g)\na %s cell "
 				  "needs equal edges and fixed angles as its group says",
-				  phase->group.symbol, misfit, system_name(phase->group.number));
+				  phase->group.symbol, misfit,
+				  system_name(phase->group.number));
 	return true;
 }
 
-static bool build_cell(bh_phase *phase, const bh_conf_section *section, bh_problems *problems)
+static bool build_cell(bh_phase *phase, const bh_conf_section *section,
+		       bh_problems *problems)
 {
 	const bh_conf_entry *given = bh_conf_entry_of(section, "cell");
 	double cell[6];
 
 	if (!spread_cell(cell, &phase->group, given))
 		return bh_problem(problems, given->place,
-				  "\"cell\" has %zu value%s\na %s cell needs %d (edges, then angles), or "
-				  "all 6", given->count, given->count == 1 ? "" : "s",
+				  "\"cell\" has %zu value%s\na %s cell needs %d (edges, "
+				  "then angles), or "
+				  "all 6",
+				  given->count, given->count == 1 ? "" : "s",
 				  system_name(phase->group.number),
 				  phase->group.number <= 15
 					  ? 6
@@ -186,10 +201,12 @@ static bool build_group(bh_phase *phase, bh_arena *arena, const bh_conf_section 
 	if (!bh_symmetry_find(&phase->group, &open, arena, given->text, &err))
 		return note(problems, given->place, &err);
 	if (open && section->section_count > 0)
-		return bh_problem(problems, given->place,
-				  "\"%s\" has two origins, and atoms need to know which\nwrite \"%s:1\" "
-				  "or \"%s:2\" (:2 when the centre of symmetry is at 0 0 0)",
-				  given->text, given->text, given->text);
+		return bh_problem(
+			problems, given->place,
+			"\"%s\" has two origins, and atoms need to know which\nwrite "
+			"\"%s:1\" "
+			"or \"%s:2\" (:2 when the centre of symmetry is at 0 0 0)",
+			given->text, given->text, given->text);
 	return true;
 }
 
@@ -210,10 +227,14 @@ static bool crystal(bh_phase *phase, bh_arena *arena, const bh_conf_section *sec
 		return note(problems, section->place, &err);
 	if (bh_structure_clash(phase, 0.5, &i, &j, &distance))
 		return bh_problem(problems, phase->sites[j].place,
-				  i == j ? "images of site \"%s\" clash with site \"%s\": %.2f Å apart\n"
-					   "check its coordinates, the origin choice and the occupancies"
-					 : "sites \"%s\" and \"%s\" clash: %.2f Å apart\natoms stand at "
-					   "least 0.5 Å apart; occupancies at one place sum to at most 1",
+				  i == j ? "images of site \"%s\" clash with site "
+					   "\"%s\": %.2f Å apart\n"
+					   "check its coordinates, the origin choice and "
+					   "the occupancies"
+					 : "sites \"%s\" and \"%s\" clash: %.2f Å "
+					   "apart\natoms stand at "
+					   "least 0.5 Å apart; occupancies at one place "
+					   "sum to at most 1",
 				  phase->sites[i].label, phase->sites[j].label, distance);
 	return true;
 }
@@ -235,7 +256,8 @@ static bool list(bh_phase *phase, bh_arena *arena, const bh_conf_section *sectio
 	}
 	if (intensity && intensity->count != d->count)
 		return bh_problem(problems, intensity->place,
-				  "\"intensity\" has %zu values, \"d\" has %zu\ngive one for each d",
+				  "\"intensity\" has %zu values, \"d\" has %zu\ngive one "
+				  "for each d",
 				  intensity->count, d->count);
 	for (size_t i = 0; i < d->count; i++) {
 		phase->list_d_A[i] = d->values[i].number;
@@ -243,14 +265,17 @@ static bool list(bh_phase *phase, bh_arena *arena, const bh_conf_section *sectio
 		most = fmax(most, phase->list_intensity[i]);
 		for (size_t k = 0; k < i; k++)
 			if (fabs(phase->list_d_A[k] / phase->list_d_A[i] - 1) < 1e-9)
-				return bh_problem(problems, d->values[i].place,
-						  "d = %s Å stands twice in the list\ngive it once",
-						  d->values[i].text);
+				return bh_problem(
+					problems, d->values[i].place,
+					"d = %s Å stands twice in the list\ngive it once",
+					d->values[i].text);
 	}
 	phase->corundum_ratio = isfinite(ratio) ? ratio : 0;
 	if (phase->corundum_ratio > 0 && !(most > 0))
-		return bh_problem(problems, bh_conf_entry_of(section, "corundum_ratio")->place,
-				  "\"corundum_ratio\" needs intensities above 0\ngive \"intensity\", one "
+		return bh_problem(problems,
+				  bh_conf_entry_of(section, "corundum_ratio")->place,
+				  "\"corundum_ratio\" needs intensities above 0\ngive "
+				  "\"intensity\", one "
 				  "for each d");
 	return true;
 }
@@ -264,82 +289,98 @@ static bool substance(bh_phase *phase, bh_arena *arena, const bh_conf_section *s
 	bh_err err = { BH_OK, 0, 0, "", "", "" };
 
 	if (phase->kind == BH_PHASE_ATOMS && (formula || density))
-		return bh_problem(problems, (formula ? formula : density)->place,
-				  "\"%s\" follows from the atoms of this phase\ntake it out",
-				  formula ? "formula" : "density");
+		return bh_problem(
+			problems, (formula ? formula : density)->place,
+			"\"%s\" follows from the atoms of this phase\ntake it out",
+			formula ? "formula" : "density");
 	if (formula) {
-		if (!bh_formula_read(&phase->composition, arena, formula->values[0].text, &err))
+		if (!bh_formula_read(&phase->composition, arena, formula->values[0].text,
+				     &err))
 			return note(problems, formula->values[0].place, &err);
-		snprintf(phase->formula, sizeof phase->formula, "%s", formula->values[0].text);
+		snprintf(phase->formula, sizeof phase->formula, "%s",
+			 formula->values[0].text);
 	}
 	if (density)
 		phase->density_g_cm3 = density->values[0].number;
 	return true;
 }
 
-static bool texture(bh_phase *phase, const bh_conf_section *section, bh_problems *problems)
+static bool texture(bh_phase *phase, const bh_conf_section *section,
+		    bh_problems *problems)
 {
 	const bh_conf_entry *axis = bh_conf_entry_of(section, "march_axis");
 	const bh_conf_entry *march = bh_conf_entry_of(section, "march");
 
 	phase->march = number(section, "march");
 	if (axis && axis->count != 3)
-		return bh_problem(problems, axis->place, "\"march_axis\" has %zu values\nit needs 3: "
-				  "{h, k, l}", axis->count);
+		return bh_problem(problems, axis->place,
+				  "\"march_axis\" has %zu values\nit needs 3: "
+				  "{h, k, l}",
+				  axis->count);
 	if ((march != NULL) != (axis != NULL))
 		return bh_problem(problems, (march ? march : axis)->place,
 				  "\"%s\" stands alone\nmarch and march_axis go together",
 				  march ? "march" : "march_axis");
 	if (march && phase->kind == BH_PHASE_LIST)
-		return bh_problem(problems, march->place, "a d list has no texture\ntake march out");
+		return bh_problem(problems, march->place,
+				  "a d list has no texture\ntake march out");
 	for (int i = 0; axis && i < 3; i++)
 		phase->march_axis[i] = (int)lround(axis->values[i].number);
-	if (axis && !phase->march_axis[0] && !phase->march_axis[1] && !phase->march_axis[2])
-		return bh_problem(problems, axis->place, "\"march_axis\" is 0 0 0\ngive a plane");
+	if (axis && !phase->march_axis[0] && !phase->march_axis[1] &&
+	    !phase->march_axis[2])
+		return bh_problem(problems, axis->place,
+				  "\"march_axis\" is 0 0 0\ngive a plane");
 	return true;
 }
 
-static bool list_target(bh_target *target, const bh_phase *phase, const bh_conf_value *value,
-			bh_problems *problems)
+static bool list_target(bh_target *target, const bh_phase *phase,
+			const bh_conf_value *value, bh_problems *problems)
 {
 	double d_A, best = HUGE_VAL;
 
 	if (!bh_number_read(&d_A, value->text, strlen(value->text)))
-		return bh_problem(problems, value->place,
-				  "\"%s\" is no distance\na phase given as a list has targets like "
-				  "\"3.29\" (Å)", value->text);
+		return bh_problem(
+			problems, value->place,
+			"\"%s\" is no distance\na phase given as a list has targets like "
+			"\"3.29\" (Å)",
+			value->text);
 	for (size_t i = 0; i < phase->list_count; i++)
 		if (fabs(phase->list_d_A[i] / d_A - 1) < best) {
 			best = fabs(phase->list_d_A[i] / d_A - 1);
 			target->d_A = phase->list_d_A[i];
 		}
 	if (best > 0.005)
-		return bh_problem(problems, value->place,
-				  "d = %s Å is not in the list of \"%s\"\nnearest: %.5g Å", value->text,
-				  phase->name, target->d_A);
+		return bh_problem(
+			problems, value->place,
+			"d = %s Å is not in the list of \"%s\"\nnearest: %.5g Å",
+			value->text, phase->name, target->d_A);
 	snprintf(target->text, sizeof target->text, "%.5g Å", target->d_A);
 	return true;
 }
 
-static bool plane_target(bh_target *target, const bh_phase *phase, const bh_conf_value *value,
-			 bh_problems *problems)
+static bool plane_target(bh_target *target, const bh_phase *phase,
+			 const bh_conf_value *value, bh_problems *problems)
 {
 	bh_mat3 reciprocal;
 	int h[3];
 
 	if (!bh_hkl_parse(h, value->text))
 		return bh_problem(problems, value->place,
-				  "\"%s\" is no plane\nlike \"1 0 4\", \"1,0,-4\", \"10-4\" or \"1 0 -1 "
-				  "4\"", value->text);
+				  "\"%s\" is no plane\nlike \"1 0 4\", \"1,0,-4\", "
+				  "\"10-4\" or \"1 0 -1 "
+				  "4\"",
+				  value->text);
 	if (bh_hkl_absent(&phase->group, h))
 		return bh_problem(problems, value->place,
-				  "%d %d %d is extinguished by %s: it never reflects\nask for another "
-				  "plane", h[0], h[1], h[2], phase->group.symbol);
+				  "%d %d %d is extinguished by %s: it never "
+				  "reflects\nask for another "
+				  "plane",
+				  h[0], h[1], h[2], phase->group.symbol);
 	bh_hkl_standard(target->h, &phase->group, h);
 	bh_cell_reciprocal(&reciprocal, &phase->cell);
 	target->d_A = bh_cell_d_A(&reciprocal, target->h);
-	snprintf(target->text, sizeof target->text, "%d %d %d", target->h[0], target->h[1],
-		 target->h[2]);
+	snprintf(target->text, sizeof target->text, "%d %d %d", target->h[0],
+		 target->h[1], target->h[2]);
 	return true;
 }
 
@@ -347,8 +388,9 @@ size_t bh_build_target(bh_phase *phase, bh_arena *arena, const bh_conf_value *va
 		       bh_problems *problems)
 {
 	bh_target target = { .place = value->place }, *grown;
-	bool good = phase->kind == BH_PHASE_LIST ? list_target(&target, phase, value, problems)
-						 : plane_target(&target, phase, value, problems);
+	bool good = phase->kind == BH_PHASE_LIST
+			    ? list_target(&target, phase, value, problems)
+			    : plane_target(&target, phase, value, problems);
 
 	if (!good)
 		return SIZE_MAX;
@@ -372,8 +414,10 @@ static bool goes_with(const bh_conf_section *section, const char *key, const cha
 	const bh_conf_entry *entry = bh_conf_entry_of(section, key);
 
 	return !entry || bh_problem(problems, entry->place,
-				    "\"%s\" does not go with \"%s\"\na phase is a cell and space group, "
-				    "or a list of d", key, other);
+				    "\"%s\" does not go with \"%s\"\na phase is a cell "
+				    "and space group, "
+				    "or a list of d",
+				    key, other);
 }
 
 /* Which description it is: a crystal, or a list. */
@@ -387,16 +431,18 @@ static bool describe(bh_phase *phase, bh_arena *arena, const bh_conf_section *se
 		good = goes_with(section, "cell", "d", problems);
 		good = goes_with(section, "space_group", "d", problems) && good;
 		if (section->section_count > 0)
-			good = bh_problem(problems, section->sections[0]->place,
-					  "atoms do not go with \"d\"\na phase is a cell and space "
-					  "group, or a list of d");
+			good = bh_problem(
+				problems, section->sections[0]->place,
+				"atoms do not go with \"d\"\na phase is a cell and space "
+				"group, or a list of d");
 		return list(phase, arena, section, problems) && good;
 	}
 	good = goes_with(section, "intensity", "cell", problems);
 	good = goes_with(section, "corundum_ratio", "cell", problems) && good;
 	if (!has_cell || !has_group)
 		return bh_problem(problems, section->place,
-				  "phase \"%s\" has no \"%s\"\ngive space_group and cell, or a list of d",
+				  "phase \"%s\" has no \"%s\"\ngive space_group and "
+				  "cell, or a list of d",
 				  section->title, has_cell ? "space_group" : "cell");
 	return crystal(phase, arena, section, problems) && good;
 }
@@ -415,15 +461,17 @@ bool bh_build_phase(bh_phase *phase, bh_arena *arena, const bh_conf_section *sec
 	phase->strain = number(section, "strain");
 	phase->march = 1;
 	if (strlen(section->title) >= sizeof phase->name)
-		return bh_problem(problems, section->title_place,
-				  "the name of a phase is longer than %zu bytes\nshorten it",
-				  sizeof phase->name - 1);
+		return bh_problem(
+			problems, section->title_place,
+			"the name of a phase is longer than %zu bytes\nshorten it",
+			sizeof phase->name - 1);
 	if (!describe(phase, arena, section, problems))
 		return false;
 	good = substance(phase, arena, section, problems);
 	good = texture(phase, section, problems) && good;
 	for (size_t i = 0; targets && i < targets->count; i++)
-		good = bh_build_target(phase, arena, &targets->values[i], problems) != SIZE_MAX &&
+		good = bh_build_target(phase, arena, &targets->values[i], problems) !=
+			       SIZE_MAX &&
 		       good;
 	return good;
 }

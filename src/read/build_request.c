@@ -17,8 +17,8 @@ static size_t sections_named(const bh_conf_section *root, const char *name)
 	return n;
 }
 
-static bool build_phases(bh_request *request, bh_arena *arena, const bh_conf_section *root,
-			 bh_problems *problems)
+static bool build_phases(bh_request *request, bh_arena *arena,
+			 const bh_conf_section *root, bh_problems *problems)
 {
 	bool good = true;
 
@@ -29,8 +29,9 @@ static bool build_phases(bh_request *request, bh_arena *arena, const bh_conf_sec
 	}
 	for (size_t i = 0; i < root->section_count; i++)
 		if (strcmp(root->sections[i]->name, "phase") == 0)
-			good = bh_build_phase(&request->phases[request->phase_count++], arena,
-					      root->sections[i], problems) && good;
+			good = bh_build_phase(&request->phases[request->phase_count++],
+					      arena, root->sections[i], problems) &&
+			       good;
 	return good;
 }
 
@@ -50,21 +51,26 @@ static bool settle_shares(bh_request *request, const bh_conf_section *root,
 		}
 		if (rest)
 			return bh_problem(problems, phase->place,
-					  "phases \"%s\" and \"%s\" both have no share\nonly one may "
-					  "leave it out: it gets the rest", rest->name, phase->name);
+					  "phases \"%s\" and \"%s\" both have no "
+					  "share\nonly one may "
+					  "leave it out: it gets the rest",
+					  rest->name, phase->name);
 		rest = phase;
 	}
 	if (sum > 1 + 5e-4)
 		return bh_problem(problems, root->place,
-				  "the shares and the amorphous part sum to %.6g wt%%\nallowed: 100 in "
-				  "all", 100 * sum);
+				  "the shares and the amorphous part sum to %.6g "
+				  "wt%%\nallowed: 100 in "
+				  "all",
+				  100 * sum);
 	if (rest)
 		rest->share_frac = sum < 1 ? 1 - sum : 0;
 	else if (sum < 1 - 5e-4)
 		return bh_problem(problems, root->place,
-				  "the shares sum to %.6g wt%%: %.6g wt%% is missing\nadd it, or leave "
-				  "the share of one phase out: it gets the rest", 100 * sum,
-				  100 * (1 - sum));
+				  "the shares sum to %.6g wt%%: %.6g wt%% is "
+				  "missing\nadd it, or leave "
+				  "the share of one phase out: it gets the rest",
+				  100 * sum, 100 * (1 - sum));
 	else
 		for (size_t i = 0; i < request->phase_count; i++)
 			request->phases[i].share_frac *= (1 - request->amorphous_frac) /
@@ -72,8 +78,8 @@ static bool settle_shares(bh_request *request, const bh_conf_section *root,
 	return true;
 }
 
-static bool build_specimen(bh_request *request, bh_arena *arena, const bh_conf_section *root,
-			   bh_problems *problems)
+static bool build_specimen(bh_request *request, bh_arena *arena,
+			   const bh_conf_section *root, bh_problems *problems)
 {
 	const bh_conf_section *s = bh_conf_section_of(root, "specimen");
 	const bh_conf_entry *formula = bh_conf_entry_of(s, "amorphous_formula");
@@ -98,7 +104,8 @@ static bool build_specimen(bh_request *request, bh_arena *arena, const bh_conf_s
 		 formula->values[0].text);
 	if (bh_formula_read(&request->amorphous, arena, formula->values[0].text, &err))
 		return true;
-	return bh_problem(problems, formula->values[0].place, "%s\n%s", err.what, err.hint);
+	return bh_problem(problems, formula->values[0].place, "%s\n%s", err.what,
+			  err.hint);
 }
 
 static size_t phase_named(const bh_request *request, const bh_conf_value *value,
@@ -116,9 +123,9 @@ static size_t phase_named(const bh_request *request, const bh_conf_value *value,
 		snprintf(list + used, sizeof list - used, "%s%.40s", used ? ", " : "",
 			 request->phases[i].name);
 	}
-	bh_problem(problems, value->place, "there is no phase \"%s\"\n%s%s%sphases: %s", value->text,
-		   near.word ? "did you mean \"" : "", near.word ? near.word : "",
-		   near.word ? "\"? " : "", list);
+	bh_problem(problems, value->place, "there is no phase \"%s\"\n%s%s%sphases: %s",
+		   value->text, near.word ? "did you mean \"" : "",
+		   near.word ? near.word : "", near.word ? "\"? " : "", list);
 	return SIZE_MAX;
 }
 
@@ -133,25 +140,31 @@ static bool build_line_aim(bh_request *request, bh_aim *aim, bh_arena *arena,
 {
 	const bh_conf_value *name = &bh_conf_entry_of(s, "phase")->values[0];
 	double area = bh_conf_number(BH_FILE_REQUEST, s, "aim line", "area_error");
-	double position = bh_conf_number(BH_FILE_REQUEST, s, "aim line", "position_error");
+	double position =
+		bh_conf_number(BH_FILE_REQUEST, s, "aim line", "position_error");
 	bh_phase *phase;
 
 	aim->phase = phase_named(request, name, problems);
 	if (aim->phase == SIZE_MAX)
 		return false;
 	if (isnan(area) && isnan(position))
-		return bh_problem(problems, s->place, "the aim asks for nothing\ngive area_error (%%), "
+		return bh_problem(problems, s->place,
+				  "the aim asks for nothing\ngive area_error (%%), "
 				  "position_error (°2θ), or both");
 	phase = &request->phases[aim->phase];
 	if (!has_rates(phase))
 		return bh_problem(problems, name->place,
-				  "\"%s\" has no rates: nothing is known of its counts\ngive it atoms, or "
-				  "a d list with a corundum_ratio; or drop the aim", phase->name);
+				  "\"%s\" has no rates: nothing is known of its "
+				  "counts\ngive it atoms, or "
+				  "a d list with a corundum_ratio; or drop the aim",
+				  phase->name);
 	if (!(phase->share_frac > 0))
-		return bh_problem(problems, name->place, "the share of \"%s\" is 0: its lines have no "
-				  "counts\ngive it a share, or drop the aim", phase->name);
-	aim->target = bh_build_target(phase, arena, &bh_conf_entry_of(s, "plane")->values[0],
-				      problems);
+		return bh_problem(problems, name->place,
+				  "the share of \"%s\" is 0: its lines have no "
+				  "counts\ngive it a share, or drop the aim",
+				  phase->name);
+	aim->target = bh_build_target(phase, arena,
+				      &bh_conf_entry_of(s, "plane")->values[0], problems);
 	aim->area_error_frac = isnan(area) ? 0 : area / 100;
 	aim->position_error_deg = isnan(position) ? 0 : position;
 	return aim->target != SIZE_MAX;
@@ -175,11 +188,14 @@ static bool build_aims(bh_request *request, bh_arena *arena, const bh_conf_secti
 			continue;
 		request->aim_count++;
 		aim->place = s->place;
-		aim->kind = strcmp(s->key_section, "aim line") == 0 ? BH_AIM_LINE : BH_AIM_SURVEY;
+		aim->kind = strcmp(s->key_section, "aim line") == 0 ? BH_AIM_LINE
+								    : BH_AIM_SURVEY;
 		if (aim->kind == BH_AIM_LINE)
 			good = build_line_aim(request, aim, arena, s, problems) && good;
 		else
-			aim->at_frac = bh_conf_number(BH_FILE_REQUEST, s, "aim survey", "at") / 100;
+			aim->at_frac =
+				bh_conf_number(BH_FILE_REQUEST, s, "aim survey", "at") /
+				100;
 	}
 	return good;
 }
@@ -203,12 +219,15 @@ static bool default_aims(bh_request *request, bh_arena *arena, bh_problems *prob
 		for (size_t k = 0; k < phase->target_count; k++)
 			if (has_rates(phase) && phase->share_frac > 0)
 				request->aims[request->aim_count++] =
-					(bh_aim){ .kind = BH_AIM_LINE, .phase = i, .target = k,
+					(bh_aim){ .kind = BH_AIM_LINE,
+						  .phase = i,
+						  .target = k,
 						  .area_error_frac = area_error_frac,
 						  .by_default = true };
 	}
-	request->aims[request->aim_count++] =
-		(bh_aim){ .kind = BH_AIM_SURVEY, .at_frac = survey_frac, .by_default = true };
+	request->aims[request->aim_count++] = (bh_aim){ .kind = BH_AIM_SURVEY,
+							.at_frac = survey_frac,
+							.by_default = true };
 	return true;
 }
 
@@ -237,7 +256,8 @@ static bool add_anode(bh_request *request, const char *symbol, bh_place place,
 				  request->instrument->name, symbol, list);
 	for (size_t i = 0; i < request->anode_count; i++)
 		if (request->anodes[i] == anode)
-			return bh_problem(problems, place, "anode %s is given twice\ngive it once",
+			return bh_problem(problems, place,
+					  "anode %s is given twice\ngive it once",
 					  symbol);
 	request->anodes[request->anode_count++] = anode;
 	return true;
@@ -250,16 +270,20 @@ static bool choose_anodes(bh_request *request, const bh_conf_section *root,
 	bool good = true;
 
 	if (options->anode)
-		return add_anode(request, options->anode, (bh_place){ "--anode", 0, 0 }, problems);
+		return add_anode(request, options->anode, (bh_place){ "--anode", 0, 0 },
+				 problems);
 	for (size_t i = 0; given && i < given->count; i++)
 		good = add_anode(request, given->values[i].text, given->values[i].place,
-				 problems) && good;
+				 problems) &&
+		       good;
 	for (size_t i = 0; !given && i < request->instrument->tube_count; i++)
-		request->anodes[request->anode_count++] = request->instrument->tubes[i].anode;
+		request->anodes[request->anode_count++] =
+			request->instrument->tubes[i].anode;
 	return good;
 }
 
-static bool limits(bh_request *request, const bh_conf_section *root, bh_problems *problems)
+static bool limits(bh_request *request, const bh_conf_section *root,
+		   bh_problems *problems)
 {
 	const bh_conf_entry *given = bh_conf_entry_of(root, "two_theta");
 	const bh_instrument *instrument = request->instrument;
@@ -269,15 +293,19 @@ static bool limits(bh_request *request, const bh_conf_section *root, bh_problems
 	if (!given)
 		return true;
 	if (given->count != 2 || !(given->values[0].number < given->values[1].number))
-		return bh_problem(problems, given->place,
-				  "\"two_theta\" is not {low, high}\ntwo angles, the lower first");
+		return bh_problem(
+			problems, given->place,
+			"\"two_theta\" is not {low, high}\ntwo angles, the lower first");
 	request->two_theta_given = true;
-	request->two_theta_min_deg = fmax(request->two_theta_min_deg, given->values[0].number);
-	request->two_theta_max_deg = fmin(request->two_theta_max_deg, given->values[1].number);
+	request->two_theta_min_deg =
+		fmax(request->two_theta_min_deg, given->values[0].number);
+	request->two_theta_max_deg =
+		fmin(request->two_theta_max_deg, given->values[1].number);
 	if (request->two_theta_max_deg - request->two_theta_min_deg >= 0.5)
 		return true;
 	return bh_problem(problems, given->place,
-			  "\"two_theta\" leaves %s less than half a degree\nits arms reach %g to %g°",
+			  "\"two_theta\" leaves %s less than half a degree\nits arms "
+			  "reach %g to %g°",
 			  instrument->name, instrument->two_theta_min_deg,
 			  instrument->two_theta_max_deg);
 }
@@ -292,12 +320,13 @@ bool bh_build_request(bh_request *request, bh_arena *arena, const bh_conf_sectio
 	snprintf(request->title, sizeof request->title, "%s",
 		 bh_conf_text(BH_FILE_REQUEST, root, "", "title"));
 	request->booking.longest_s = isnan(longest) ? 0 : longest;
-	request->booking.most_ranges = (size_t)bh_conf_number(BH_FILE_REQUEST, booking, "booking",
-							      "most_ranges");
+	request->booking.most_ranges = (size_t)bh_conf_number(BH_FILE_REQUEST, booking,
+							      "booking", "most_ranges");
 	request->booking.reserve_frac =
 		bh_conf_number(BH_FILE_REQUEST, booking, "booking", "reserve") / 100;
-	request->share_factor = bh_conf_number(BH_FILE_REQUEST, bh_conf_section_of(root, "unsure"),
-					       "unsure", "share_factor");
+	request->share_factor =
+		bh_conf_number(BH_FILE_REQUEST, bh_conf_section_of(root, "unsure"),
+			       "unsure", "share_factor");
 	good = build_specimen(request, arena, root, problems);
 	good = build_phases(request, arena, root, problems) && good;
 	if (request->instrument) {

@@ -35,12 +35,14 @@ typedef struct {
 	bh_problems *problems;
 } checker;
 
-static const bh_section_kind *kind_of(bh_key_file file, const char *parent, const char *name)
+static const bh_section_kind *kind_of(bh_key_file file, const char *parent,
+				      const char *name)
 {
 	for (size_t i = 0; i < bh_section_kind_count; i++) {
 		const bh_section_kind *k = &bh_section_kinds[i];
 
-		if (k->file == file && strcmp(k->parent, parent) == 0 && strcmp(k->name, name) == 0)
+		if (k->file == file && strcmp(k->parent, parent) == 0 &&
+		    strcmp(k->name, name) == 0)
 			return k;
 	}
 	return NULL;
@@ -57,7 +59,8 @@ static void join(char *list, size_t room, const char *name)
 		snprintf(list + used, room - used, ", ...");
 }
 
-static bool unknown_section(const checker *c, const bh_scan_section *s, const char *parent)
+static bool unknown_section(const checker *c, const bh_scan_section *s,
+			    const char *parent)
 {
 	bh_suggestion near = { 0 };
 	char list[240] = "";
@@ -69,10 +72,12 @@ static bool unknown_section(const checker *c, const bh_scan_section *s, const ch
 			join(list, sizeof list, bh_section_kinds[i].name);
 		}
 	if (near.word)
-		return bh_problem(c->problems, s->place,
-				  "unknown section \"%s\"\ndid you mean \"%s\"? allowed: %s", s->name,
-				  near.word, list);
-	return bh_problem(c->problems, s->place, "unknown section \"%s\"\nallowed here: %s", s->name,
+		return bh_problem(
+			c->problems, s->place,
+			"unknown section \"%s\"\ndid you mean \"%s\"? allowed: %s",
+			s->name, near.word, list);
+	return bh_problem(c->problems, s->place,
+			  "unknown section \"%s\"\nallowed here: %s", s->name,
 			  *list ? list : "no section");
 }
 
@@ -83,18 +88,21 @@ static bool unknown_key(const checker *c, const bh_scan_key *key, const char *se
 	char list[240] = "", where[64] = "";
 
 	for (size_t i = 0; i < bh_key_count; i++)
-		if (bh_keys[i].file == c->file && strcmp(bh_keys[i].section, section) == 0) {
+		if (bh_keys[i].file == c->file &&
+		    strcmp(bh_keys[i].section, section) == 0) {
 			bh_suggest(&near, key->name, bh_keys[i].name);
 			join(list, sizeof list, bh_keys[i].name);
 		}
 	if (*name)
 		snprintf(where, sizeof where, " in \"%.40s\"", name);
 	if (near.word)
-		return bh_problem(c->problems, key->place,
-				  "unknown key \"%s\"%s\ndid you mean \"%s\"? allowed: %s", key->name,
-				  where, near.word, list);
-	return bh_problem(c->problems, key->place, "unknown key \"%s\"%s\nallowed here: %s",
-			  key->name, where, list);
+		return bh_problem(
+			c->problems, key->place,
+			"unknown key \"%s\"%s\ndid you mean \"%s\"? allowed: %s",
+			key->name, where, near.word, list);
+	return bh_problem(c->problems, key->place,
+			  "unknown key \"%s\"%s\nallowed here: %s", key->name, where,
+			  list);
 }
 
 static bool one_of(const char *words, const char *text)
@@ -127,8 +135,9 @@ static bool bad_word(const checker *c, const bh_key *key, const bh_scan_value *v
 		bh_suggest(&near, value->text, save);
 		save += n + !last;
 	}
-	return bh_problem(c->problems, value->place, "\"%s\" is \"%s\"\n%s%s%sallowed: %s", key->name,
-			  value->text, near.word ? "did you mean \"" : "", near.word ? near.word : "",
+	return bh_problem(c->problems, value->place,
+			  "\"%s\" is \"%s\"\n%s%s%sallowed: %s", key->name, value->text,
+			  near.word ? "did you mean \"" : "", near.word ? near.word : "",
 			  near.word ? "\"? " : "", list);
 }
 
@@ -153,13 +162,15 @@ static bool check_numeric(const checker *c, const bh_key *key, const bh_scan_val
 
 	if (!bh_check_number(&number, key, value->text) ||
 	    (whole && fabs(number - round(number)) > 0))
-		return bh_problem(c->problems, value->place,
-				  "\"%s\" is \"%s\", not a %snumber\nallowed: %g to %g%s%s", key->name,
-				  value->text, whole ? "whole " : "", key->low, key->high, unit,
-				  key->unit);
+		return bh_problem(
+			c->problems, value->place,
+			"\"%s\" is \"%s\", not a %snumber\nallowed: %g to %g%s%s",
+			key->name, value->text, whole ? "whole " : "", key->low,
+			key->high, unit, key->unit);
 	if (!(number >= key->low && number <= key->high))
-		return bh_problem(c->problems, value->place, "\"%s\" is %s\nallowed: %g to %g%s%s",
-				  key->name, value->text, key->low, key->high, unit, key->unit);
+		return bh_problem(c->problems, value->place,
+				  "\"%s\" is %s\nallowed: %g to %g%s%s", key->name,
+				  value->text, key->low, key->high, unit, key->unit);
 	return true;
 }
 
@@ -175,21 +186,22 @@ static bool check_value(const checker *c, const bh_key *key, const bh_scan_value
 	case BH_KEY_DURATION:
 		return bh_check_number(&seconds, key, value->text) ||
 		       bh_problem(c->problems, value->place,
-				  "\"%s\" is \"%s\", not a duration\nlike \"2 h\", \"90 min\", \"1 h 30 "
+				  "\"%s\" is \"%s\", not a duration\nlike \"2 h\", \"90 "
+				  "min\", \"1 h 30 "
 				  "min\"",
 				  key->name, value->text);
 	case BH_KEY_TEXT:
 		if (strlen(value->text) > (size_t)key->high)
 			return bh_problem(c->problems, value->place,
-					  "\"%s\" is longer than %g bytes\nshorten it", key->name,
-					  key->high);
+					  "\"%s\" is longer than %g bytes\nshorten it",
+					  key->name, key->high);
 		return *value->text || (key->fallback && !*key->fallback) ||
-		       bh_problem(c->problems, value->place, "\"%s\" is empty\n%s", key->name,
-				  key->help);
+		       bh_problem(c->problems, value->place, "\"%s\" is empty\n%s",
+				  key->name, key->help);
 	case BH_KEY_TEXTS:
 		return *value->text ||
-		       bh_problem(c->problems, value->place, "\"%s\" holds an empty text\n%s",
-				  key->name, key->help);
+		       bh_problem(c->problems, value->place,
+				  "\"%s\" holds an empty text\n%s", key->name, key->help);
 	default:
 		return check_numeric(c, key, value);
 	}
@@ -207,7 +219,8 @@ static bool check_key(const checker *c, const bh_scan_key *written, const bh_key
 
 	if (written->list && !is_list(key))
 		return bh_problem(c->problems, written->place,
-				  "\"%s\" is a list\nit takes one value, without braces", key->name);
+				  "\"%s\" is a list\nit takes one value, without braces",
+				  key->name);
 	for (size_t i = 0; i < written->count; i++)
 		good = check_value(c, key, &written->values[i]) && good;
 	return good;
@@ -228,14 +241,14 @@ static bool check_missing(const checker *c, const bh_scan_section *s, const char
 	for (size_t i = 0; i < bh_key_count; i++) {
 		const bh_key *key = &bh_keys[i];
 
-		if (key->file != c->file || key->fallback || strcmp(key->section, section) != 0 ||
-		    is_written(s, key->name))
+		if (key->file != c->file || key->fallback ||
+		    strcmp(key->section, section) != 0 || is_written(s, key->name))
 			continue;
 		good = false;
 		bh_problem(c->problems, s->place, "%s%s%s has no \"%s\"\n%s%s%s%s",
-			   *s->name ? "section \"" : "the file", s->name, *s->name ? "\"" : "",
-			   key->name, key->help, *key->unit ? " (" : "", key->unit,
-			   *key->unit ? ")" : "");
+			   *s->name ? "section \"" : "the file", s->name,
+			   *s->name ? "\"" : "", key->name, key->help,
+			   *key->unit ? " (" : "", key->unit, *key->unit ? ")" : "");
 	}
 	return good;
 }
@@ -257,12 +270,14 @@ const char *bh_check_key_section(const bh_scan_section *section, bh_key_file fil
 	}
 	bh_problem(problems, section->title ? section->title_place : section->place,
 		   "no such aim: \"%s\"\n%s%s%sallowed: line, survey",
-		   section->title ? section->title : "", near.word ? "did you mean \"" : "",
-		   near.word ? near.word : "", near.word ? "\"? " : "");
+		   section->title ? section->title : "",
+		   near.word ? "did you mean \"" : "", near.word ? near.word : "",
+		   near.word ? "\"? " : "");
 	return NULL;
 }
 
-static bool check_section(const checker *c, const bh_scan_section *s, const char *section);
+static bool check_section(const checker *c, const bh_scan_section *s,
+			  const char *section);
 
 static bool check_titles(const checker *c, const bh_scan_section *parent,
 			 const bh_scan_section *s, const bh_section_kind *kind)
@@ -270,24 +285,30 @@ static bool check_titles(const checker *c, const bh_scan_section *parent,
 	bool good = true;
 
 	if (kind->titled && (!s->title || !*s->title))
-		good = bh_problem(c->problems, s->place, "\"%s\" needs a name\nlike %s \"%s\" { ... }",
-				  s->name, s->name, strcmp(s->name, "tube") == 0 ? "Cu" : "quartz");
+		good = bh_problem(c->problems, s->place,
+				  "\"%s\" needs a name\nlike %s \"%s\" { ... }", s->name,
+				  s->name,
+				  strcmp(s->name, "tube") == 0 ? "Cu" : "quartz");
 	if (!kind->titled && s->title)
-		good = bh_problem(c->problems, s->title_place, "\"%s\" takes no name\nlike %s { ... }",
-				  s->name, s->name);
+		good = bh_problem(c->problems, s->title_place,
+				  "\"%s\" takes no name\nlike %s { ... }", s->name,
+				  s->name);
 	for (size_t i = 0; parent->sections[i] != s; i++) {
 		const bh_scan_section *other = parent->sections[i];
 
 		if (strcmp(other->name, s->name) != 0)
 			continue;
 		if (!kind->many)
-			return bh_problem(c->problems, s->place, "\"%s\" is given twice\nit stands in "
-					  "line %d already", s->name, other->place.line);
-		if (strcmp(s->name, "aim") != 0 && strcmp(s->name, "site") != 0 && s->title &&
-		    other->title && strcmp(other->title, s->title) == 0)
-			return bh_problem(c->problems, s->title_place, "%s \"%s\" is given twice\nit "
-					  "stands in line %d already", s->name, s->title,
-					  other->place.line);
+			return bh_problem(c->problems, s->place,
+					  "\"%s\" is given twice\nit stands in "
+					  "line %d already",
+					  s->name, other->place.line);
+		if (strcmp(s->name, "aim") != 0 && strcmp(s->name, "site") != 0 &&
+		    s->title && other->title && strcmp(other->title, s->title) == 0)
+			return bh_problem(c->problems, s->title_place,
+					  "%s \"%s\" is given twice\nit "
+					  "stands in line %d already",
+					  s->name, s->title, other->place.line);
 	}
 	return good;
 }
@@ -313,13 +334,16 @@ static bool check_subsections(const checker *c, const bh_scan_section *s)
 		const bh_section_kind *kind = &bh_section_kinds[i];
 		bool found = false;
 
-		if (kind->file != c->file || !kind->needed || strcmp(kind->parent, s->name) != 0)
+		if (kind->file != c->file || !kind->needed ||
+		    strcmp(kind->parent, s->name) != 0)
 			continue;
 		for (size_t k = 0; k < s->section_count; k++)
 			found = found || strcmp(s->sections[k]->name, kind->name) == 0;
 		if (!found)
-			good = bh_problem(c->problems, s->place, "there is no section \"%s\"\nit must "
-					  "be given", kind->name);
+			good = bh_problem(c->problems, s->place,
+					  "there is no section \"%s\"\nit must "
+					  "be given",
+					  kind->name);
 	}
 	return good;
 }
@@ -332,14 +356,16 @@ static bool check_section(const checker *c, const bh_scan_section *s, const char
 		const bh_key *key = bh_key_find(c->file, section, s->keys[i].name);
 
 		good = (key ? check_key(c, &s->keys[i], key)
-			    : unknown_key(c, &s->keys[i], section, section)) && good;
+			    : unknown_key(c, &s->keys[i], section, section)) &&
+		       good;
 	}
 	if (c->whole)
 		good = check_missing(c, s, section) && good;
 	return check_subsections(c, s) && good;
 }
 
-bool bh_check(const bh_scan_section *root, bh_key_file file, bool whole, bh_problems *problems)
+bool bh_check(const bh_scan_section *root, bh_key_file file, bool whole,
+	      bh_problems *problems)
 {
 	checker c = { file, whole, problems };
 

@@ -20,7 +20,8 @@ const char *bh_check_key_section(const bh_scan_section *section, bh_key_file fil
 
 /* Check a scanned file against the tables. whole: also what must be given.
  *   false  problems noted */
-bool bh_check(const bh_scan_section *root, bh_key_file file, bool whole, bh_problems *problems);
+bool bh_check(const bh_scan_section *root, bh_key_file file, bool whole,
+	      bh_problems *problems);
 
 /* The number that a value stands for, by the key's type; false: it is none. */
 bool bh_check_number(double *number, const bh_key *key, const char *text);

@@ -23,8 +23,10 @@ static void on_error(cfg_t *cfg, const char *format, va_list args)
 	char text[256];
 
 	vsnprintf(text, sizeof text, format, args);
-	bh_problem(complaints, (bh_place){ complaint_file, cfg ? cfg->line : 0, 1 }, "%s\ncheck the "
-		   "line", text);
+	bh_problem(complaints, (bh_place){ complaint_file, cfg ? cfg->line : 0, 1 },
+		   "%s\ncheck the "
+		   "line",
+		   text);
 }
 
 static bool is_list(const bh_key *key)
@@ -38,9 +40,9 @@ static bool belongs(const bh_key *key, bh_key_file file, const char *section)
 {
 	size_t n = strlen(section);
 
-	return key->file == file && (strcmp(key->section, section) == 0 ||
-				     (n && strncmp(key->section, section, n) == 0 &&
-				      key->section[n] == ' '));
+	return key->file == file &&
+	       (strcmp(key->section, section) == 0 ||
+		(n && strncmp(key->section, section, n) == 0 && key->section[n] == ' '));
 }
 
 static bool has(const cfg_opt_t *options, size_t count, const char *name)
@@ -54,7 +56,8 @@ static bool has(const cfg_opt_t *options, size_t count, const char *name)
 /* Options of a section for the parser, sub-sections included. */
 static cfg_opt_t *options_of(bh_arena *arena, bh_key_file file, const char *section)
 {
-	cfg_opt_t *options = bh_new(arena, cfg_opt_t, bh_key_count + bh_section_kind_count + 1);
+	cfg_opt_t *options =
+		bh_new(arena, cfg_opt_t, bh_key_count + bh_section_kind_count + 1);
 	size_t n = 0;
 
 	if (!options)
@@ -65,9 +68,11 @@ static cfg_opt_t *options_of(bh_arena *arena, bh_key_file file, const char *sect
 		if (!belongs(key, file, section) || has(options, n, key->name))
 			continue;
 		if (is_list(key))
-			options[n++] = (cfg_opt_t)CFG_STR_LIST(key->name, NULL, CFGF_NODEFAULT);
+			options[n++] =
+				(cfg_opt_t)CFG_STR_LIST(key->name, NULL, CFGF_NODEFAULT);
 		else
-			options[n++] = (cfg_opt_t)CFG_STR(key->name, NULL, CFGF_NODEFAULT);
+			options[n++] =
+				(cfg_opt_t)CFG_STR(key->name, NULL, CFGF_NODEFAULT);
 	}
 	for (size_t i = 0; i < bh_section_kind_count; i++) {
 		const bh_section_kind *kind = &bh_section_kinds[i];
@@ -79,7 +84,8 @@ static cfg_opt_t *options_of(bh_arena *arena, bh_key_file file, const char *sect
 		if (!inside)
 			return NULL;
 		options[n++] = (cfg_opt_t)CFG_SEC(kind->name, inside,
-						  kind->titled ? CFGF_MULTI | CFGF_TITLE : CFGF_NONE);
+						  kind->titled ? CFGF_MULTI | CFGF_TITLE
+							       : CFGF_NONE);
 	}
 	options[n] = (cfg_opt_t)CFG_END();
 	return options;
@@ -91,7 +97,8 @@ typedef struct {
 	bool lost;
 } builder;
 
-static bool fill_entry(builder *b, bh_conf_entry *entry, const bh_scan_key *written, cfg_t *cfg)
+static bool fill_entry(builder *b, bh_conf_entry *entry, const bh_scan_key *written,
+		       cfg_t *cfg)
 {
 	entry->place = written->place;
 	entry->count = written->count;
@@ -148,7 +155,8 @@ static bh_conf_section *build(builder *b, const bh_scan_section *s, cfg_t *cfg)
 			return NULL;
 	}
 	for (size_t i = 0; i < s->section_count; i++) {
-		bh_conf_section *sub = build(b, s->sections[i], partner(cfg, s->sections[i]));
+		bh_conf_section *sub =
+			build(b, s->sections[i], partner(cfg, s->sections[i]));
 
 		if (!sub)
 			return NULL;
@@ -178,7 +186,8 @@ static bool parse(bh_conf_section **root, bh_arena *arena, bh_key_file kind,
 		good = *root != NULL;
 		problems->lost = problems->lost || !good;
 	} else if (problems->count == before) {
-		bh_problem(problems, scanned->place, "the file cannot be parsed\ncheck its quotes and "
+		bh_problem(problems, scanned->place,
+			   "the file cannot be parsed\ncheck its quotes and "
 			   "braces");
 	}
 	cfg_free(cfg);
@@ -195,8 +204,9 @@ static int by_place(const void *a, const void *b)
 	return (p->col > q->col) - (p->col < q->col);
 }
 
-bool bh_conf_read(bh_conf_section **root, bh_arena *arena, bh_key_file kind, const char *file,
-		  const char *bytes, size_t length, bh_problems *problems)
+bool bh_conf_read(bh_conf_section **root, bh_arena *arena, bh_key_file kind,
+		  const char *file, const char *bytes, size_t length,
+		  bh_problems *problems)
 {
 	bh_text text = { 0 };
 	bh_scan_section *scanned = NULL;
@@ -210,8 +220,8 @@ bool bh_conf_read(bh_conf_section **root, bh_arena *arena, bh_key_file kind, con
 	       parse(root, arena, kind, scanned, text.bytes ? text.bytes : "", problems);
 	bh_text_free(&text);
 	if (problems->count > before)
-		qsort(problems->items + before, problems->count - before, sizeof *problems->items,
-		      by_place);
+		qsort(problems->items + before, problems->count - before,
+		      sizeof *problems->items, by_place);
 	return good;
 }
 
@@ -231,8 +241,8 @@ const bh_conf_section *bh_conf_section_of(const bh_conf_section *parent, const c
 	return NULL;
 }
 
-double bh_conf_number(bh_key_file kind, const bh_conf_section *section, const char *key_section,
-		      const char *key)
+double bh_conf_number(bh_key_file kind, const bh_conf_section *section,
+		      const char *key_section, const char *key)
 {
 	const bh_conf_entry *entry = bh_conf_entry_of(section, key);
 	const bh_key *row = bh_key_find(kind, key_section, key);

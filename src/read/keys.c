@@ -20,7 +20,7 @@
 const bh_key bh_keys[] = {
 	/* file section        name                 type  unit   low     high    fallback  words   help */
 	{ REQ, "",             "title",             TXT,  "",    0,      120,    "",       NULL, "what the plan is called" },
-	{ REQ, "",             "instrument",        TXT,  "",    0,      250,    NULL,     NULL, "a preset's name, or the path of an instrument file" },
+	{ REQ, "",             "instrument",        TXT,  "",    0,      250,    "",       NULL, "a preset's name, or the path of an instrument file; --instrument goes before it" },
 	{ REQ, "",             "anodes",            TXTS, "",    1,      8,      "",       NULL, "anodes to choose among, the first is planned for; left out: all of the instrument" },
 	{ REQ, "",             "two_theta",         NUMS, "°",   0,      180,    "",       NULL, "your own limits, {low, high}" },
 
@@ -181,14 +181,18 @@ void bh_keys_markdown(bh_text *text, bh_key_file file)
 		if (key->file != file)
 			continue;
 		if (!section || strcmp(section, key->section) != 0) {
-			bh_text_format(text, "%s**%s**\n\n| key | unit | allowed | default | meaning |\n"
-					     "|---|---|---|---|---|\n",
-				       section ? "\n" : "", *key->section ? key->section : "top level");
+			bh_text_format(text,
+				       "%s**%s**\n\n| key | unit | allowed | default | "
+				       "meaning |\n"
+				       "|---|---|---|---|---|\n",
+				       section ? "\n" : "",
+				       *key->section ? key->section : "top level");
 			section = key->section;
 		}
 		bh_text_format(text, "| `%s` | %s | ", key->name, key->unit);
 		allowed(text, key);
 		bh_text_format(text, " | %s | %s |\n",
-			       !key->fallback ? "must be given" : key->fallback, key->help);
+			       !key->fallback ? "must be given" : key->fallback,
+			       key->help);
 	}
 }

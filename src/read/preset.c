@@ -120,8 +120,10 @@ bool bh_preset_find(const char **path, bh_arena *arena, const char *name_or_path
 	if (strchr(name_or_path, '/') || ends_in_conf(name_or_path)) {
 		*path = name_or_path;
 		return is_file(name_or_path) ||
-		       bh_fail(err, BH_BAD_INPUT, "there is no instrument file %s\nbeamhour presets "
-			       "lists what is shipped", name_or_path);
+		       bh_fail(err, BH_BAD_INPUT,
+			       "there is no instrument file %s\nbeamhour presets "
+			       "lists what is shipped",
+			       name_or_path);
 	}
 	if (!bh_preset_list(&presets, &count, arena, dirs, dir_count, err))
 		return false;
@@ -133,10 +135,12 @@ bool bh_preset_find(const char **path, bh_arena *arena, const char *name_or_path
 			return true;
 		}
 		bh_suggest(&near, name_or_path, presets[i].name);
-		snprintf(list + used, sizeof list - used, "%s%s", used ? ", " : "", presets[i].name);
+		snprintf(list + used, sizeof list - used, "%s%s", used ? ", " : "",
+			 presets[i].name);
 	}
-	return bh_fail(err, BH_BAD_INPUT, "there is no instrument \"%s\"\n%s%s%sshipped: %s",
-		       name_or_path, near.word ? "did you mean \"" : "", near.word ? near.word : "",
+	return bh_fail(err, BH_BAD_INPUT,
+		       "there is no instrument \"%s\"\n%s%s%sshipped: %s", name_or_path,
+		       near.word ? "did you mean \"" : "", near.word ? near.word : "",
 		       near.word ? "\"? " : "", *list ? list : "none was found");
 }
 
@@ -163,8 +167,9 @@ bool bh_instrument_read(bh_instrument **instrument, bh_arena *arena, const char 
 		problems->lost = true;
 		return false;
 	}
-	snprintf((*instrument)->name, sizeof (*instrument)->name, "%s", name);
+	snprintf((*instrument)->name, sizeof(*instrument)->name, "%s", name);
 	return good &&
-	       bh_conf_read(&root, arena, BH_FILE_INSTRUMENT, path, bytes, length, problems) &&
+	       bh_conf_read(&root, arena, BH_FILE_INSTRUMENT, path, bytes, length,
+			    problems) &&
 	       bh_build_instrument(*instrument, arena, root, problems);
 }

@@ -10,9 +10,9 @@
 #include "model/instrument.h"
 
 typedef struct {
-	const char *name;   /* "strip-200"             */
+	const char *name; /* "strip-200"             */
 	const char *path;
-	const char *title;  /* the file's own title    */
+	const char *title; /* the file's own title    */
 } bh_preset;
 
 /* Every *.conf of the folders, by name, the first folder that has a name wins.

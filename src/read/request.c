@@ -18,19 +18,28 @@ static bool unreadable(bh_problems *problems, const char *path, const char *why)
 	return bh_problem_add(problems, &err);
 }
 
-static bool load_instrument(bh_request *request, bh_arena *arena, const bh_conf_section *root,
-			    const bh_read_options *options, bh_problems *problems)
+static bool load_instrument(bh_request *request, bh_arena *arena,
+			    const bh_conf_section *root, const bh_read_options *options,
+			    bh_problems *problems)
 {
 	const bh_conf_entry *given = bh_conf_entry_of(root, "instrument");
-	const char *name = options->instrument ? options->instrument : given->values[0].text;
+	const char *name = options->instrument ? options->instrument
+			   : given	       ? given->values[0].text
+					       : "";
 	bh_place place = options->instrument ? (bh_place){ "--instrument", 0, 0 }
-					     : given->values[0].place;
+			 : given	     ? given->values[0].place
+					     : root->place;
 	bh_err err = { BH_OK, 0, 0, "", "", "" };
 	bh_instrument *instrument;
 	const char *path;
 
-	if (!bh_preset_find(&path, arena, name, options->preset_dirs, options->preset_dir_count,
-			    &err)) {
+	if (!*name)
+		return bh_problem(problems, place,
+				  "the request names no instrument\nadd instrument = "
+				  "\"strip-200\" or the path of a file; beamhour presets "
+				  "lists them");
+	if (!bh_preset_find(&path, arena, name, options->preset_dirs,
+			    options->preset_dir_count, &err)) {
 		problems->lost = problems->lost || err.code == BH_BAD_SYSTEM;
 		return bh_problem(problems, place, "%s\n%s", err.what, err.hint);
 	}
@@ -53,7 +62,7 @@ bool bh_request_read_text(bh_request **request, bh_arena *arena, const char *nam
 		problems->lost = true;
 		return false;
 	}
-	snprintf((*request)->file, sizeof (*request)->file, "%s", file);
+	snprintf((*request)->file, sizeof(*request)->file, "%s", file);
 	if (!bh_conf_read(&root, arena, BH_FILE_REQUEST, file, text, length, problems))
 		return false;
 	good = load_instrument(*request, arena, root, options, problems);
@@ -79,5 +88,6 @@ bool bh_request_read(bh_request **request, bh_arena *arena, const char *path,
 	good = bh_scan_load(&bytes, &length, arena, name, stream, problems);
 	if (!standard)
 		fclose(stream);
-	return good && bh_request_read_text(request, arena, name, bytes, length, options, problems);
+	return good && bh_request_read_text(request, arena, name, bytes, length, options,
+					    problems);
 }

@@ -11,11 +11,11 @@
 
 /* What the command line adds to a request. Pointers are borrowed; NULL: not given. */
 typedef struct {
-	const char *instrument;        /* instead of the request's               */
-	const char *anode;             /* instead of the request's               */
+	const char *instrument;		/* instead of the request's               */
+	const char *anode;		/* instead of the request's               */
 	const char *const *preset_dirs; /* searched in order for instruments     */
 	size_t preset_dir_count;
-	FILE *stdin_stream;            /* read when path is "-"                  */
+	FILE *stdin_stream; /* read when path is "-"                  */
 } bh_read_options;
 
 /* Read, check and resolve a request and its instrument.

@@ -10,9 +10,9 @@ typedef struct {
 	size_t ids;
 	bh_arena *arena;
 	bh_problems *problems;
-	bh_text *out;     /* parser's copy; written as far as `copied` */
+	bh_text *out; /* parser's copy; written as far as `copied` */
 	size_t copied;
-	bool recovered;   /* a line was given up: braces may not balance any more */
+	bool recovered; /* a line was given up: braces may not balance any more */
 	bool lost;
 } scanner;
 
@@ -35,8 +35,10 @@ bool bh_scan_load(char **bytes, size_t *length, bh_arena *arena, const char *fil
 		return bh_problem_add(problems, &err);
 	}
 	if (n > BH_FILE_MOST)
-		return bh_problem(problems, place, "the file is larger than 1 MB\nallowed: up to %d "
-				  "bytes", BH_FILE_MOST);
+		return bh_problem(problems, place,
+				  "the file is larger than 1 MB\nallowed: up to %d "
+				  "bytes",
+				  BH_FILE_MOST);
 	*length = n;
 	return true;
 }
@@ -102,7 +104,8 @@ static bool skip_block_comment(scanner *c)
 			new_line(c);
 	}
 	c->at = c->n;
-	return bh_problem(c->problems, place, "this comment is never closed\nclose it with */");
+	return bh_problem(c->problems, place,
+			  "this comment is never closed\nclose it with */");
 }
 
 /* To the next character that is neither blank nor comment. */
@@ -151,7 +154,8 @@ static size_t bare_end(const scanner *c)
 	size_t i = c->at;
 
 	while (i < c->n && bare_char(c->s[i]) &&
-	       !(c->s[i] == '/' && i + 1 < c->n && (c->s[i + 1] == '/' || c->s[i + 1] == '*')))
+	       !(c->s[i] == '/' && i + 1 < c->n &&
+		 (c->s[i + 1] == '/' || c->s[i + 1] == '*')))
 		i++;
 	return i;
 }
@@ -163,10 +167,15 @@ static bool quoted(scanner *c, bh_scan_value *value)
 
 	while (c->at < c->n && c->s[c->at] != quote) {
 		if (c->s[c->at] == '\n')
-			return bh_problem(c->problems, value->place,
-					  "this text is not closed before the line ends\nclose it "
-					  "with %c", quote);
-		c->at += c->s[c->at] == '\\' && c->at + 1 < c->n && c->s[c->at + 1] != '\n' ? 2 : 1;
+			return bh_problem(
+				c->problems, value->place,
+				"this text is not closed before the line ends\nclose it "
+				"with %c",
+				quote);
+		c->at +=
+			c->s[c->at] == '\\' && c->at + 1 < c->n && c->s[c->at + 1] != '\n'
+				? 2
+				: 1;
 	}
 	if (c->at >= c->n)
 		return bh_problem(c->problems, value->place,
@@ -188,14 +197,16 @@ static bool value_at(scanner *c, bh_scan_value *value)
 	} else {
 		end = bare_end(c);
 		if (end == c->at)
-			return bh_problem(c->problems, value->place,
-					  "a value is missing here\nlike 12.5, \"text\" or {1, 2}");
+			return bh_problem(
+				c->problems, value->place,
+				"a value is missing here\nlike 12.5, \"text\" or {1, 2}");
 		value->text = take(c, c->at, end);
 		c->at = end;
 	}
 	if (value->text && strstr(value->text, "${"))
-		return bh_problem(c->problems, value->place,
-				  "\"${\" is not allowed in a value\nwrite the value itself");
+		return bh_problem(
+			c->problems, value->place,
+			"\"${\" is not allowed in a value\nwrite the value itself");
 	return value->text != NULL;
 }
 
@@ -228,10 +239,13 @@ static bool list(scanner *c, bh_scan_key *key)
 		if (!skip(c))
 			return false;
 		if (c->at < c->n && c->s[c->at] == '}' && key->count == 0)
-			return bh_problem(c->problems, open, "\"%s\" has an empty list\ngive at least "
-					  "one value", key->name);
+			return bh_problem(c->problems, open,
+					  "\"%s\" has an empty list\ngive at least "
+					  "one value",
+					  key->name);
 		if (c->at >= c->n)
-			return bh_problem(c->problems, open, "this list is never closed\nclose it "
+			return bh_problem(c->problems, open,
+					  "this list is never closed\nclose it "
 					  "with }");
 		if (!value_at(c, &value) || !add_value(c, key, value) || !skip(c))
 			return false;
@@ -240,11 +254,14 @@ static bool list(scanner *c, bh_scan_key *key)
 			return true;
 		}
 		if (c->at >= c->n)
-			return bh_problem(c->problems, open, "this list is never closed\nclose it "
+			return bh_problem(c->problems, open,
+					  "this list is never closed\nclose it "
 					  "with }");
 		if (c->s[c->at] != ',')
-			return bh_problem(c->problems, here(c), "a comma is missing in the list of "
-					  "\"%s\"\nlike {1, 2, 3}", key->name);
+			return bh_problem(c->problems, here(c),
+					  "a comma is missing in the list of "
+					  "\"%s\"\nlike {1, 2, 3}",
+					  key->name);
 		c->at++;
 	}
 }
@@ -254,8 +271,8 @@ static bool add_key(scanner *c, bh_scan_section *section, bh_scan_key key)
 	for (size_t i = 0; i < section->key_count; i++)
 		if (strcmp(section->keys[i].name, key.name) == 0)
 			bh_problem(c->problems, key.place,
-				   "\"%s\" is given twice\nit stands in line %d already", key.name,
-				   section->keys[i].place.line);
+				   "\"%s\" is given twice\nit stands in line %d already",
+				   key.name, section->keys[i].place.line);
 	if (section->key_count == section->key_room) {
 		size_t more = section->key_room ? 2 * section->key_room : 8;
 		bh_scan_key *grown = bh_grow(c->arena, section->keys, bh_scan_key,
@@ -272,7 +289,8 @@ static bool add_key(scanner *c, bh_scan_section *section, bh_scan_key key)
 	return true;
 }
 
-static bool assignment(scanner *c, bh_scan_section *section, const char *name, bh_place place)
+static bool assignment(scanner *c, bh_scan_section *section, const char *name,
+		       bh_place place)
 {
 	bh_scan_key key = { .name = name, .place = place };
 	bh_scan_value value;
@@ -297,8 +315,9 @@ static bh_scan_section *add_section(scanner *c, bh_scan_section *parent)
 
 	if (made && parent->section_count == parent->section_room) {
 		size_t more = parent->section_room ? 2 * parent->section_room : 4;
-		bh_scan_section **grown = bh_grow(c->arena, parent->sections, bh_scan_section *,
-						  parent->section_room, more);
+		bh_scan_section **grown =
+			bh_grow(c->arena, parent->sections, bh_scan_section *,
+				parent->section_room, more);
 
 		if (!grown)
 			made = NULL;
@@ -317,8 +336,8 @@ static bh_scan_section *add_section(scanner *c, bh_scan_section *parent)
 }
 
 /* `name {` or `name "title" {`: the title gives way to the id in the parser's copy. */
-static bool section_at(scanner *c, bh_scan_section *parent, const char *name, bh_place place,
-		       int depth)
+static bool section_at(scanner *c, bh_scan_section *parent, const char *name,
+		       bh_place place, int depth)
 {
 	bh_scan_section *made = add_section(c, parent);
 	bh_scan_value title;
@@ -340,18 +359,24 @@ static bool section_at(scanner *c, bh_scan_section *parent, const char *name, bh
 			return false;
 	}
 	if (c->at >= c->n || c->s[c->at] != '{')
-		return bh_problem(c->problems, here(c), "\"%s\" needs = and a value, or a section in "
-				  "{ }\nlike %s = 1", name, name);
+		return bh_problem(c->problems, here(c),
+				  "\"%s\" needs = and a value, or a section in "
+				  "{ }\nlike %s = 1",
+				  name, name);
 	if (depth == BH_DEPTH_MOST)
-		return bh_problem(c->problems, here(c), "sections stand too deep in each other\n"
-				  "allowed: %d", BH_DEPTH_MOST);
+		return bh_problem(c->problems, here(c),
+				  "sections stand too deep in each other\n"
+				  "allowed: %d",
+				  BH_DEPTH_MOST);
 	c->at++;
 	if (!items(c, made, depth + 1))
 		return false;
 	if (c->at >= c->n)
 		return c->recovered ||
-		       bh_problem(c->problems, place, "the section \"%s\" that starts here is never "
-				  "closed\nclose it with }", name);
+		       bh_problem(c->problems, place,
+				  "the section \"%s\" that starts here is never "
+				  "closed\nclose it with }",
+				  name);
 	c->at++;
 	return true;
 }
@@ -363,21 +388,26 @@ static bool item(scanner *c, bh_scan_section *section, int depth)
 	char *name;
 
 	if (end == c->at)
-		return bh_problem(c->problems, place, "a \"%c\" has no place here\na key, a section or "
-				  "} may follow", c->s[c->at]);
+		return bh_problem(c->problems, place,
+				  "a \"%c\" has no place here\na key, a section or "
+				  "} may follow",
+				  c->s[c->at]);
 	name = take(c, c->at, end);
 	c->at = end;
 	if (!name || !skip(c))
 		return false;
 	if (c->at < c->n && c->s[c->at] == '=' && name[strlen(name) - 1] == '+')
-		return bh_problem(c->problems, place, "\"+=\" is not allowed\nwrite = and the whole "
+		return bh_problem(c->problems, place,
+				  "\"+=\" is not allowed\nwrite = and the whole "
 				  "list");
 	if (c->at < c->n && c->s[c->at] == '=')
 		return assignment(c, section, name, place);
-	if (c->at < c->n && (c->s[c->at] == '{' || c->s[c->at] == '"' || c->s[c->at] == '\''))
+	if (c->at < c->n &&
+	    (c->s[c->at] == '{' || c->s[c->at] == '"' || c->s[c->at] == '\''))
 		return section_at(c, section, name, place, depth);
-	return bh_problem(c->problems, place, "\"%s\" is followed by neither = nor {\nlike %s = 1",
-			  name, name);
+	return bh_problem(c->problems, place,
+			  "\"%s\" is followed by neither = nor {\nlike %s = 1", name,
+			  name);
 }
 
 /* After a problem: go on behind this line, so that one run finds the next problem too. */
@@ -407,7 +437,8 @@ static bool items(scanner *c, bh_scan_section *section, int depth)
 				c->at++;
 				continue;
 			}
-			return bh_problem(c->problems, here(c), "this } closes nothing\ntake it out, "
+			return bh_problem(c->problems, here(c),
+					  "this } closes nothing\ntake it out, "
 					  "or open a section with {");
 		}
 		if (!item(c, section, depth) && !give_up_line(c))
@@ -418,8 +449,11 @@ static bool items(scanner *c, bh_scan_section *section, int depth)
 /* Bytes of one UTF-8 character, 0 when it is none. */
 static size_t utf8_length(const unsigned char *s, size_t n)
 {
-	size_t need = s[0] < 0x80 ? 1 : s[0] >= 0xC2 && s[0] < 0xE0 ? 2 : (s[0] & 0xF0) == 0xE0 ? 3 :
-		      s[0] >= 0xF0 && s[0] < 0xF5 ? 4 : 0;
+	size_t need = s[0] < 0x80		    ? 1
+		      : s[0] >= 0xC2 && s[0] < 0xE0 ? 2
+		      : (s[0] & 0xF0) == 0xE0	    ? 3
+		      : s[0] >= 0xF0 && s[0] < 0xF5 ? 4
+						    : 0;
 
 	if (need > n)
 		return 0;
@@ -440,16 +474,22 @@ static bool clean(scanner *c)
 		c->at = i;
 		if (c->s[i] == '\n') {
 			new_line(c);
-		} else if ((unsigned char)c->s[i] < ' ' && c->s[i] != '\t' && c->s[i] != '\r') {
-			good = bh_problem(c->problems, here(c), "a control byte (0x%02x) in the "
+		} else if ((unsigned char)c->s[i] < ' ' && c->s[i] != '\t' &&
+			   c->s[i] != '\r') {
+			good = bh_problem(c->problems, here(c),
+					  "a control byte (0x%02x) in the "
 					  "file\nplain UTF-8 text is allowed",
 					  (unsigned)(unsigned char)c->s[i]);
 		} else if (length == 0) {
-			good = bh_problem(c->problems, here(c), "a byte (0x%02x) that is not UTF-8\n"
-					  "save the file as UTF-8", (unsigned)(unsigned char)c->s[i]);
+			good = bh_problem(c->problems, here(c),
+					  "a byte (0x%02x) that is not UTF-8\n"
+					  "save the file as UTF-8",
+					  (unsigned)(unsigned char)c->s[i]);
 		} else if (i - c->line_start > BH_LINE_MOST) {
-			good = bh_problem(c->problems, here(c), "a line longer than %d bytes\nbreak "
-					  "it", BH_LINE_MOST);
+			good = bh_problem(c->problems, here(c),
+					  "a line longer than %d bytes\nbreak "
+					  "it",
+					  BH_LINE_MOST);
 		}
 		i += length ? length : 1;
 	}
@@ -458,11 +498,16 @@ static bool clean(scanner *c)
 	return good;
 }
 
-bool bh_scan(bh_scan_section **root, bh_text *parser_text, bh_arena *arena, const char *file,
-	     const char *bytes, size_t length, bh_problems *problems)
+bool bh_scan(bh_scan_section **root, bh_text *parser_text, bh_arena *arena,
+	     const char *file, const char *bytes, size_t length, bh_problems *problems)
 {
-	scanner c = { .file = file, .s = bytes, .n = length, .line = 1, .arena = arena,
-		      .problems = problems, .out = parser_text };
+	scanner c = { .file = file,
+		      .s = bytes,
+		      .n = length,
+		      .line = 1,
+		      .arena = arena,
+		      .problems = problems,
+		      .out = parser_text };
 	size_t before = problems->count;
 	bool good;
 

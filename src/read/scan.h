@@ -13,7 +13,7 @@ enum { BH_FILE_MOST = 1 << 20, BH_LINE_MOST = 4096, BH_DEPTH_MOST = 4 };
 
 /* One value as written. */
 typedef struct {
-	const char *text;  /* inside the quotes, escapes not resolved (conf does that) */
+	const char *text; /* inside the quotes, escapes not resolved (conf does that) */
 	bool quoted;
 	bh_place place;
 } bh_scan_value;
@@ -21,7 +21,7 @@ typedef struct {
 typedef struct {
 	const char *name;
 	bh_place place;
-	bool list;          /* written in braces */
+	bool list; /* written in braces */
 	bh_scan_value *values;
 	size_t count;
 } bh_scan_key;
@@ -30,7 +30,7 @@ typedef struct {
 typedef struct bh_scan_section {
 	const char *name, *title; /* title NULL: none written */
 	bh_place place, title_place;
-	size_t id;                /* counts all sections of the file */
+	size_t id; /* counts all sections of the file */
 	bh_scan_key *keys;
 	size_t key_count, key_room;
 	struct bh_scan_section **sections;
@@ -48,7 +48,7 @@ bool bh_scan_load(char **bytes, size_t *length, bh_arena *arena, const char *fil
  *   returns  *root; parser_text for the parser: comments blanked, lines kept, each title
  *            replaced by the section's id
  *   false    problems noted */
-bool bh_scan(bh_scan_section **root, bh_text *parser_text, bh_arena *arena, const char *file,
-	     const char *bytes, size_t length, bh_problems *problems);
+bool bh_scan(bh_scan_section **root, bh_text *parser_text, bh_arena *arena,
+	     const char *file, const char *bytes, size_t length, bh_problems *problems);
 
 #endif

@@ -6,7 +6,8 @@
 
 void bh_suggest(bh_suggestion *suggestion, const char *written, const char *offered)
 {
-	size_t near = strlen(written) / 3, distance = bh_nearest_distance(written, offered);
+	size_t near = strlen(written) / 3,
+	       distance = bh_nearest_distance(written, offered);
 
 	if (near < 2)
 		near = 2;

@@ -28,12 +28,14 @@ bool bh_render_reflections_csv(bh_text *text, const bh_plan *plan, bh_err *err)
 {
 	const bh_signal *signal = &plan->signal;
 
-	bh_text_add(text, "phase,h,k,l,d_A,multiplicity,f2,two_theta_deg,fwhm_deg,rate_cps_deg,"
-			  "relative,target\r\n");
+	bh_text_add(text,
+		    "phase,h,k,l,d_A,multiplicity,f2,two_theta_deg,fwhm_deg,rate_cps_deg,"
+		    "relative,target\r\n");
 	for (size_t i = 0; i < signal->in_range_count; i++) {
 		const bh_reflection *r = &signal->reflections[i];
 		const bh_phase *phase = &plan->phases[r->phase];
-		bool plane = phase->kind != BH_PHASE_LIST, atoms = phase->kind == BH_PHASE_ATOMS;
+		bool plane = phase->kind != BH_PHASE_LIST,
+		     atoms = phase->kind == BH_PHASE_ATOMS;
 
 		field(text, phase->name);
 		for (int k = 0; k < 3; k++)

@@ -30,10 +30,10 @@ static json_t *text(const char *value)
 }
 
 /* An array of one object for each item. */
-#define ARRAY(count, make)                                                                 \
-	json_t *array = json_array();                                                      \
-	for (size_t i = 0; array && i < (count); i++)                                      \
-		json_array_append_new(array, (make));                                      \
+#define ARRAY(count, make)                                                               \
+	json_t *array = json_array();                                                    \
+	for (size_t i = 0; array && i < (count); i++)                                    \
+		json_array_append_new(array, (make));                                    \
 	return array
 
 static const bh_anode *anode_of(const bh_plan *plan)
@@ -52,13 +52,14 @@ static json_t *generator(const bh_plan *plan)
 static json_t *emission_line(const bh_line *line)
 {
 	return json_pack("{s:o, s:o, s:o, s:o}", "name", text(line->name), "wavelength",
-			 number(line->wavelength_A), "energy", number(line->energy_keV), "flux",
-			 number(line->flux_s));
+			 number(line->wavelength_A), "energy", number(line->energy_keV),
+			 "flux", number(line->flux_s));
 }
 
 static json_t *emission_lines(const bh_plan *plan)
 {
-	ARRAY(plan->signal.radiation.count, emission_line(&plan->signal.radiation.lines[i]));
+	ARRAY(plan->signal.radiation.count,
+	      emission_line(&plan->signal.radiation.lines[i]));
 }
 
 static json_t *radiation(const bh_plan *plan)
@@ -80,7 +81,8 @@ static json_t *elements(const bh_plan *plan)
 {
 	const bh_composition *mix = &plan->signal.mixture;
 
-	ARRAY(mix->count, json_pack("{s:o, s:o}", "symbol", text(bh_element_symbol(mix->elements[i].z)),
+	ARRAY(mix->count, json_pack("{s:o, s:o}", "symbol",
+				    text(bh_element_symbol(mix->elements[i].z)),
 				    "mass_fraction", number(mix->elements[i].mass_frac)));
 }
 
@@ -88,7 +90,8 @@ static json_t *mixture(const bh_plan *plan)
 {
 	return json_pack("{s:o, s:o, s:o}", "density",
 			 number_if(plan->signal.rates_known, plan->signal.density_g_cm3),
-			 "mass_attenuation", attenuations(plan), "elements", elements(plan));
+			 "mass_attenuation", attenuations(plan), "elements",
+			 elements(plan));
 }
 
 static json_t *cell(const bh_phase *phase)
@@ -97,8 +100,9 @@ static json_t *cell(const bh_phase *phase)
 
 	if (phase->kind == BH_PHASE_LIST)
 		return json_null();
-	return json_pack("[o, o, o, o, o, o]", number(c->a_A), number(c->b_A), number(c->c_A),
-			 number(c->alpha_deg), number(c->beta_deg), number(c->gamma_deg));
+	return json_pack("[o, o, o, o, o, o]", number(c->a_A), number(c->b_A),
+			 number(c->c_A), number(c->alpha_deg), number(c->beta_deg),
+			 number(c->gamma_deg));
 }
 
 static json_t *atoms(const bh_phase *phase)
@@ -114,13 +118,15 @@ static json_t *phase_of(const bh_phase *phase)
 {
 	bool list = phase->kind == BH_PHASE_LIST;
 
-	return json_pack("{s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o}", "name", text(phase->name),
-			 "space_group", list ? json_null() : text(phase->group.symbol), "hall",
-			 list ? json_null() : text(phase->group.hall), "cell", cell(phase), "volume",
-			 number_if(!list, phase->volume_A3), "density",
-			 number_if(phase->density_g_cm3 > 0, phase->density_g_cm3), "formula",
-			 *phase->formula ? text(phase->formula) : json_null(), "share",
-			 number(100 * phase->share_frac), "atoms", atoms(phase));
+	return json_pack("{s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o}", "name",
+			 text(phase->name), "space_group",
+			 list ? json_null() : text(phase->group.symbol), "hall",
+			 list ? json_null() : text(phase->group.hall), "cell",
+			 cell(phase), "volume", number_if(!list, phase->volume_A3),
+			 "density",
+			 number_if(phase->density_g_cm3 > 0, phase->density_g_cm3),
+			 "formula", *phase->formula ? text(phase->formula) : json_null(),
+			 "share", number(100 * phase->share_frac), "atoms", atoms(phase));
 }
 
 static json_t *phases(const bh_plan *plan)
@@ -135,19 +141,22 @@ static json_t *reflection(const bh_plan *plan, const bh_reflection *r)
 	bool has_atoms = phase->kind == BH_PHASE_ATOMS;
 	bool relative = has_atoms || (!plane && phase->corundum_ratio > 0);
 
-	return json_pack("{s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:b}", "phase",
-			 text(phase->name), "h", plane ? json_integer(r->h[0]) : json_null(), "k",
-			 plane ? json_integer(r->h[1]) : json_null(), "l",
-			 plane ? json_integer(r->h[2]) : json_null(), "d", number(r->d_A),
-			 "multiplicity", plane ? json_integer(r->multiplicity) : json_null(), "f2",
-			 number_if(has_atoms, r->f2), "two_theta", number(r->two_theta_deg), "fwhm",
-			 number(r->fwhm_deg), "rate", number_if(r->rate_known, r->rate_cps_deg),
-			 "relative", number_if(relative, r->relative), "target", (int)r->target);
+	return json_pack(
+		"{s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:b}", "phase",
+		text(phase->name), "h", plane ? json_integer(r->h[0]) : json_null(), "k",
+		plane ? json_integer(r->h[1]) : json_null(), "l",
+		plane ? json_integer(r->h[2]) : json_null(), "d", number(r->d_A),
+		"multiplicity", plane ? json_integer(r->multiplicity) : json_null(), "f2",
+		number_if(has_atoms, r->f2), "two_theta", number(r->two_theta_deg),
+		"fwhm", number(r->fwhm_deg), "rate",
+		number_if(r->rate_known, r->rate_cps_deg), "relative",
+		number_if(relative, r->relative), "target", (int)r->target);
 }
 
 static json_t *reflections(const bh_plan *plan)
 {
-	ARRAY(plan->signal.in_range_count, reflection(plan, &plan->signal.reflections[i]));
+	ARRAY(plan->signal.in_range_count,
+	      reflection(plan, &plan->signal.reflections[i]));
 }
 
 static json_t *peaks(const bh_plan *plan)
@@ -164,9 +173,11 @@ static json_t *peaks(const bh_plan *plan)
 			continue;
 		json_array_append_new(
 			array,
-			json_pack("{s:o, s:o, s:o, s:o, s:o}", "reflection", whole(p->reflection),
-				  "line", text(signal->radiation.lines[p->line].name), "two_theta",
-				  number(p->two_theta_deg), "fwhm", number(p->fwhm_deg), "rate",
+			json_pack("{s:o, s:o, s:o, s:o, s:o}", "reflection",
+				  whole(p->reflection), "line",
+				  text(signal->radiation.lines[p->line].name),
+				  "two_theta", number(p->two_theta_deg), "fwhm",
+				  number(p->fwhm_deg), "rate",
 				  number_if(signal->reflections[p->reflection].rate_known,
 					    p->rate_cps_deg)));
 	}
@@ -176,10 +187,11 @@ static json_t *peaks(const bh_plan *plan)
 static json_t *background_row(const bh_background *b, bool known)
 {
 	return json_pack("{s:o, s:o, s:o, s:o, s:o, s:o, s:o}", "two_theta",
-			 number(b->two_theta_deg), "blank", number(b->blank), "fluorescence",
-			 number_if(known, b->fluorescence), "continuum",
-			 number_if(known, b->continuum), "compton", number_if(known, b->compton),
-			 "diffuse", number_if(known, b->diffuse), "total",
+			 number(b->two_theta_deg), "blank", number(b->blank),
+			 "fluorescence", number_if(known, b->fluorescence), "continuum",
+			 number_if(known, b->continuum), "compton",
+			 number_if(known, b->compton), "diffuse",
+			 number_if(known, b->diffuse), "total",
 			 number_if(known, b->total));
 }
 
@@ -194,8 +206,9 @@ static json_t *fluorescence(const bh_plan *plan)
 	const bh_fluorescence *f = plan->signal.fluorescence;
 
 	ARRAY(plan->signal.fluorescence_count,
-	      json_pack("{s:o, s:o, s:o, s:o, s:o}", "element", text(bh_element_symbol(f[i].z)), "line",
-			text(f[i].line), "energy", number(f[i].energy_keV), "excited_by",
+	      json_pack("{s:o, s:o, s:o, s:o, s:o}", "element",
+			text(bh_element_symbol(f[i].z)), "line", text(f[i].line),
+			"energy", number(f[i].energy_keV), "excited_by",
 			text(f[i].excited_by), "rate", number(f[i].rate_cps)));
 }
 
@@ -213,9 +226,10 @@ static json_t *finding_of(const bh_finding *f)
 {
 	static const char *const severities[] = { "note", "caution", "severe" };
 
-	return json_pack("{s:o, s:o, s:o, s:o, s:o, s:o, s:o}", "kind", text(f->kind), "severity",
-			 text(severities[f->severity]), "where", text(f->where), "text",
-			 text(f->text), "evidence", evidence(f), "remedy", text(f->remedy), "gain",
+	return json_pack("{s:o, s:o, s:o, s:o, s:o, s:o, s:o}", "kind", text(f->kind),
+			 "severity", text(severities[f->severity]), "where",
+			 text(f->where), "text", text(f->text), "evidence", evidence(f),
+			 "remedy", text(f->remedy), "gain",
 			 number_if(f->gain > 0, f->gain));
 }
 
@@ -228,14 +242,15 @@ static json_t *range_of(const bh_range *r)
 {
 	static const char *const modes[] = { "step", "moving", "standing" };
 
-	return json_pack("{s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o}", "from",
-			 number(r->from_deg), "to", number(r->to_deg), "travel_from",
-			 number(r->travel_from_deg), "travel_to", number(r->travel_to_deg), "mode",
-			 text(modes[r->mode]), "step", number(r->step_deg), "steps",
-			 whole(r->steps), "exposure", number(r->exposure_s), "time_per_step",
+	return json_pack("{s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o}",
+			 "from", number(r->from_deg), "to", number(r->to_deg),
+			 "travel_from", number(r->travel_from_deg), "travel_to",
+			 number(r->travel_to_deg), "mode", text(modes[r->mode]), "step",
+			 number(r->step_deg), "steps", whole(r->steps), "exposure",
+			 number(r->exposure_s), "time_per_step",
 			 number(r->time_per_step_s), "speed",
-			 number_if(r->mode == BH_MODE_MOVING, r->speed_deg_s), "wall_time",
-			 number(r->wall_s));
+			 number_if(r->mode == BH_MODE_MOVING, r->speed_deg_s),
+			 "wall_time", number(r->wall_s));
 }
 
 static json_t *ranges(const bh_plan *plan)
@@ -247,12 +262,13 @@ static json_t *aim_of(const bh_plan *plan, const bh_aim_result *a)
 {
 	bool line = a->aim->kind == BH_AIM_LINE;
 
-	return json_pack("{s:o, s:o, s:o, s:o, s:o, s:o, s:b, s:o}", "kind", text(a->kind), "phase",
-			 line ? text(plan->phases[a->aim->phase].name) : json_null(), "what",
-			 text(a->what), "wanted", number(a->wanted), "predicted",
+	return json_pack("{s:o, s:o, s:o, s:o, s:o, s:o, s:b, s:o}", "kind",
+			 text(a->kind), "phase",
+			 line ? text(plan->phases[a->aim->phase].name) : json_null(),
+			 "what", text(a->what), "wanted", number(a->wanted), "predicted",
 			 number_if(a->computed, a->predicted), "floor",
-			 number_if(a->computed && line, a->floor), "met", (int)a->met, "price",
-			 number_if(a->computed && a->price_s >= 0, a->price_s));
+			 number_if(a->computed && line, a->floor), "met", (int)a->met,
+			 "price", number_if(a->computed && a->price_s >= 0, a->price_s));
 }
 
 static json_t *aims(const bh_plan *plan)
@@ -264,17 +280,18 @@ static json_t *times(const bh_plan *plan)
 {
 	const bh_times *t = &plan->times;
 
-	return json_pack("{s:o, s:o, s:o, s:n, s:n, s:o, s:n}", "total", number(t->total_s),
-			 "scanning", number(t->scanning_s), "overhead", number(t->overhead_s),
-			 "ideal", "ideal_bound", "constant_scan",
-			 number_if(t->constant_scan_s > 0, t->constant_scan_s), "certificate");
+	return json_pack(
+		"{s:o, s:o, s:o, s:n, s:n, s:o, s:n}", "total", number(t->total_s),
+		"scanning", number(t->scanning_s), "overhead", number(t->overhead_s),
+		"ideal", "ideal_bound", "constant_scan",
+		number_if(t->constant_scan_s > 0, t->constant_scan_s), "certificate");
 }
 
 static json_t *uncertainty(const bh_plan *plan)
 {
 	ARRAY(plan->unsure_count,
-	      json_pack("{s:o, s:o, s:o, s:o}", "input", text(plan->unsure[i].input), "factor",
-			number(plan->unsure[i].factor), "wall_time_low",
+	      json_pack("{s:o, s:o, s:o, s:o}", "input", text(plan->unsure[i].input),
+			"factor", number(plan->unsure[i].factor), "wall_time_low",
 			number(plan->unsure[i].wall_low_s), "wall_time_high",
 			number(plan->unsure[i].wall_high_s)));
 }
@@ -288,19 +305,21 @@ static json_t *up_to_reflections(const bh_plan *plan)
 {
 	return json_pack("{s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o}", "schema",
 			 text("beamhour/1"), "version", text(BH_VERSION), "request",
-			 text(plan->request->title), "anode", text(anode_of(plan)->symbol),
-			 "instrument", text(plan->instrument->name), "generator", generator(plan),
+			 text(plan->request->title), "anode",
+			 text(anode_of(plan)->symbol), "instrument",
+			 text(plan->instrument->name), "generator", generator(plan),
 			 "radiation", radiation(plan), "mixture", mixture(plan), "phases",
 			 phases(plan), "reflections", reflections(plan));
 }
 
 static json_t *rest(const bh_plan *plan)
 {
-	return json_pack("{s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:[]}", "peaks", peaks(plan),
-			 "background", background(plan), "fluorescence", fluorescence(plan),
-			 "findings", findings(plan), "ranges", ranges(plan), "aims", aims(plan),
-			 "time", times(plan), "uncertainty", uncertainty(plan), "cautions",
-			 cautions(plan), "booking");
+	return json_pack("{s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:[]}", "peaks",
+			 peaks(plan), "background", background(plan), "fluorescence",
+			 fluorescence(plan), "findings", findings(plan), "ranges",
+			 ranges(plan), "aims", aims(plan), "time", times(plan),
+			 "uncertainty", uncertainty(plan), "cautions", cautions(plan),
+			 "booking");
 }
 
 static int add_bytes(const char *bytes, size_t count, void *to)
@@ -312,8 +331,9 @@ static int add_bytes(const char *bytes, size_t count, void *to)
 /* Takes the document over. NULL: memory was out while it was built. */
 static bool print(bh_text *to, json_t *document, bh_err *err)
 {
-	bool good = document && json_dump_callback(document, add_bytes, to,
-						   JSON_INDENT(1) | JSON_REAL_PRECISION(17)) == 0;
+	bool good = document &&
+		    json_dump_callback(document, add_bytes, to,
+				       JSON_INDENT(1) | JSON_REAL_PRECISION(17)) == 0;
 
 	if (good)
 		bh_text_add(to, "\n");

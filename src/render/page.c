@@ -30,8 +30,8 @@ static void footer(const paper *p)
 	bh_words line = { NULL, 6.8, false, BH_AT_LEFT, 0.35 };
 	char text[400], number[40];
 
-	snprintf(text, sizeof text, "beamhour %s · %.120s · %.120s", BH_VERSION, p->sheet->title,
-		 p->plan->request->file);
+	snprintf(text, sizeof text, "beamhour %s · %.120s · %.120s", BH_VERSION,
+		 p->sheet->title, p->plan->request->file);
 	snprintf(number, sizeof number, "page %zu of %zu", p->page, p->pages);
 	bh_pen_line(p->pen, left, 806, right, 806, (bh_stroke){ 0.4, 0.6, false });
 	line.text = text;
@@ -60,9 +60,12 @@ static bool need(paper *p, double height)
 
 static void header(paper *p)
 {
-	p->y += bh_pen_words(p->pen, words(p->sheet->title, 14, true), left, p->y, right - left);
-	p->y += 1 + bh_pen_words(p->pen, (bh_words){ p->sheet->subtitle, 9, false, BH_AT_LEFT, 0.3 },
-				 left, p->y, right - left);
+	p->y += bh_pen_words(p->pen, words(p->sheet->title, 14, true), left, p->y,
+			     right - left);
+	p->y += 1 +
+		bh_pen_words(p->pen,
+			     (bh_words){ p->sheet->subtitle, 9, false, BH_AT_LEFT, 0.3 },
+			     left, p->y, right - left);
 	p->y += 6;
 }
 
@@ -122,13 +125,15 @@ static void heading(paper *p, const char *text, double keep)
 	need(p, 18 + keep);
 	bh_pen_line(p->pen, left, p->y, right, p->y, (bh_stroke){ 0.7, 0, false });
 	p->y += 3;
-	p->y += 3 + bh_pen_words(p->pen, words(text, head_size, true), left, p->y, right - left);
+	p->y += 3 + bh_pen_words(p->pen, words(text, head_size, true), left, p->y,
+				 right - left);
 }
 
 static void figure(paper *p)
 {
 	need(p, figure_height);
-	bh_page_figure(p->pen, p->plan, (bh_box){ left, p->y, right - left, figure_height });
+	bh_page_figure(p->pen, p->plan,
+		       (bh_box){ left, p->y, right - left, figure_height });
 	p->y += figure_height;
 }
 
@@ -145,7 +150,8 @@ static double natural(const paper *p, const bh_table *t, size_t column)
 	widest = unit > widest ? unit : widest;
 	for (size_t i = 0; i < t->row_count; i++) {
 		double w = bh_pen_words_width(
-			p->pen, words(t->cells[i * t->column_count + column], body_size, false));
+			p->pen,
+			words(t->cells[i * t->column_count + column], body_size, false));
 
 		widest = w > widest ? w : widest;
 	}
@@ -218,7 +224,8 @@ static void table_head(paper *p, const columns *c, const bh_table *t)
 	cells(p, c, t, names, words("", body_size, true));
 	p->y += cells_height(p, c, t, names, true);
 	if (any) {
-		cells(p, c, t, units, (bh_words){ "", small_size, false, BH_AT_LEFT, 0.35 });
+		cells(p, c, t, units,
+		      (bh_words){ "", small_size, false, BH_AT_LEFT, 0.35 });
 		p->y += cells_height(p, c, t, units, false) - 1;
 	}
 	bh_pen_line(p->pen, left, p->y, right, p->y, (bh_stroke){ 0.4, 0.4, false });
@@ -252,9 +259,11 @@ static void badge(const paper *p, int weight)
 	if (weight == 2)
 		bh_pen_fill(p->pen, box, 0);
 	else
-		bh_pen_frame(p->pen, box, (bh_stroke){ weight ? 1 : 0.4, weight ? 0 : 0.6, false });
+		bh_pen_frame(p->pen, box,
+			     (bh_stroke){ weight ? 1 : 0.4, weight ? 0 : 0.6, false });
 	bh_pen_words(p->pen,
-		     (bh_words){ names[weight], 7, weight > 0, BH_AT_CENTRE, weight == 2 ? 1 : 0 },
+		     (bh_words){ names[weight], 7, weight > 0, BH_AT_CENTRE,
+				 weight == 2 ? 1 : 0 },
 		     box.x, box.y + 1.4, box.width);
 }
 
@@ -276,13 +285,16 @@ static void finding(paper *p, const bh_item *i)
 	snprintf(remedy, sizeof remedy, "→ %s", i->then);
 	height = bh_pen_words_height(p->pen, lead, width) +
 		 bh_pen_words_height(p->pen, text, width) +
-		 (*i->then ? bh_pen_words_height(p->pen, words(remedy, body_size, false), width) : 0);
+		 (*i->then ? bh_pen_words_height(p->pen, words(remedy, body_size, false),
+						 width)
+			   : 0);
 	need(p, height);
 	badge(p, i->weight);
 	p->y += bh_pen_words(p->pen, lead, x, p->y, width);
 	p->y += bh_pen_words(p->pen, text, x, p->y, width);
 	if (*i->then)
-		p->y += bh_pen_words(p->pen, words(remedy, body_size, false), x, p->y, width);
+		p->y += bh_pen_words(p->pen, words(remedy, body_size, false), x, p->y,
+				     width);
 	p->y += 4;
 }
 
@@ -296,7 +308,8 @@ static void sign_off(paper *p, const bh_section *s)
 
 		bh_pen_frame(p->pen, box, (bh_stroke){ 0.6, 0, false });
 		bh_pen_words(p->pen,
-			     (bh_words){ s->items[i].lead, small_size, false, BH_AT_LEFT, 0.35 },
+			     (bh_words){ s->items[i].lead, small_size, false, BH_AT_LEFT,
+					 0.35 },
 			     box.x + 4, box.y + 3, width - 8);
 	}
 	p->y += height + 4;
@@ -307,7 +320,8 @@ static double label_column(const paper *p, const bh_section *s)
 	double widest = 0;
 
 	for (size_t i = 0; i < s->item_count; i++) {
-		double w = bh_pen_words_width(p->pen, words(s->items[i].lead, body_size, true));
+		double w = bh_pen_words_width(p->pen,
+					      words(s->items[i].lead, body_size, true));
 
 		widest = w > widest ? w : widest;
 	}
@@ -322,11 +336,13 @@ static void lines(paper *p, const bh_section *s, double size)
 		if (label > 0)
 			labelled(p, &s->items[i], label, size);
 		else {
-			double h = bh_pen_words_height(p->pen, words(s->items[i].text, size, false),
-						       right - left);
+			double h = bh_pen_words_height(
+				p->pen, words(s->items[i].text, size, false),
+				right - left);
 
 			need(p, h);
-			p->y += 1.5 + bh_pen_words(p->pen, words(s->items[i].text, size, false),
+			p->y += 1.5 + bh_pen_words(p->pen,
+						   words(s->items[i].text, size, false),
 						   left, p->y, right - left);
 		}
 }
@@ -370,8 +386,8 @@ static size_t lay(bh_pen *pen, const bh_plan *plan, const bh_sheet *sheet, size_
 	return p.page;
 }
 
-static bool draw(bh_text *bytes, const bh_plan *plan, const bh_sheet *sheet, bh_page_kind kind,
-		 bh_err *err)
+static bool draw(bh_text *bytes, const bh_plan *plan, const bh_sheet *sheet,
+		 bh_page_kind kind, bh_err *err)
 {
 	bh_pen *pen = bh_pen_open(kind, true, 1, sheet->title, err);
 	size_t pages;
@@ -396,7 +412,8 @@ bool bh_render_page(bh_text *bytes, const bh_plan *plan, bh_page_kind kind, bh_e
 
 	if (!arena)
 		return bh_fail_memory(err);
-	good = bh_sheet_make(&sheet, arena, plan, err) && draw(bytes, plan, &sheet, kind, err);
+	good = bh_sheet_make(&sheet, arena, plan, err) &&
+	       draw(bytes, plan, &sheet, kind, err);
 	bh_arena_free(arena);
 	return good && (!bytes->lost || bh_fail_memory(err));
 }

@@ -55,8 +55,10 @@ static void shade_ranges(const figure *f)
 		const bh_range *r = &f->plan->ranges[i];
 		double from = x_of(f, r->from_deg), to = x_of(f, r->to_deg);
 
-		bh_pen_fill(f->pen, (bh_box){ from, f->plot.y, to - from, f->plot.height }, 0.9);
-		bh_pen_fill(f->pen, (bh_box){ from, f->plot.y + f->plot.height, to - from, 2.5 },
+		bh_pen_fill(f->pen,
+			    (bh_box){ from, f->plot.y, to - from, f->plot.height }, 0.9);
+		bh_pen_fill(f->pen,
+			    (bh_box){ from, f->plot.y + f->plot.height, to - from, 2.5 },
 			    0.25);
 	}
 }
@@ -69,13 +71,14 @@ static void curves(const figure *f)
 	size_t n = plan->pattern_count < POINTS ? plan->pattern_count : POINTS;
 
 	for (size_t i = 0; i < n; i++) {
-		size_t from = i * plan->pattern_count / n, to = (i + 1) * plan->pattern_count / n;
+		size_t from = i * plan->pattern_count / n,
+		       to = (i + 1) * plan->pattern_count / n;
 		double most = 0;
 
 		for (size_t k = from; k < to; k++)
 			most = fmax(most, plan->pattern_cps[k]);
-		x[i] = x_of(f, plan->pattern_from_deg +
-				       ((double)(from + to - 1) / 2) * plan->pattern_step_deg);
+		x[i] = x_of(f, plan->pattern_from_deg + ((double)(from + to - 1) / 2) *
+								plan->pattern_step_deg);
 		y[i] = y_of(f, most);
 		base[i] = y_of(f, plan->pattern_background_cps[from]);
 	}
@@ -108,7 +111,8 @@ static void axes(const figure *f)
 
 		bh_pen_line(f->pen, x, base, x, base + 4, thin);
 		bh_pen_words(f->pen,
-			     (bh_words){ bh_fmt_short(room, at, 4), 7, false, BH_AT_CENTRE, 0 },
+			     (bh_words){ bh_fmt_short(room, at, 4), 7, false,
+					 BH_AT_CENTRE, 0 },
 			     x - 15, base + 5, 30);
 	}
 	bh_pen_words(f->pen, (bh_words){ "°2θ", 7, false, BH_AT_RIGHT, 0 },
@@ -124,13 +128,15 @@ static void counts_axis(const figure *f)
 		double y = f->plot.y + f->plot.height * (1 - shares[i]);
 		char room[BH_FMT_ROOM];
 
-		bh_pen_line(f->pen, f->plot.x - 3, y, f->plot.x, y, (bh_stroke){ 0.6, 0, false });
+		bh_pen_line(f->pen, f->plot.x - 3, y, f->plot.x, y,
+			    (bh_stroke){ 0.6, 0, false });
 		bh_pen_words(f->pen,
-			     (bh_words){ bh_fmt_digits(room, root * root, 2), 7, false, BH_AT_RIGHT,
-					 0 },
+			     (bh_words){ bh_fmt_digits(room, root * root, 2), 7, false,
+					 BH_AT_RIGHT, 0 },
 			     f->plot.x - margin, y - 5, margin - 5);
 	}
-	bh_pen_words(f->pen, (bh_words){ "counts/s, √ scale", 6.5, false, BH_AT_LEFT, 0.35 },
+	bh_pen_words(f->pen,
+		     (bh_words){ "counts/s, √ scale", 6.5, false, BH_AT_LEFT, 0.35 },
 		     f->plot.x - margin + 4, f->plot.y - head, 90);
 }
 
@@ -162,8 +168,8 @@ static size_t gather(label labels[MOST_LABELS], const figure *f)
 		snprintf(l->text, sizeof l->text, "%s %s", phase->name,
 			 phase->targets[t->target].text);
 		l->x = x_of(f, t->ka1_deg);
-		l->width = bh_pen_words_width(f->pen,
-					      (bh_words){ l->text, 6.5, false, BH_AT_LEFT, 0 });
+		l->width = bh_pen_words_width(
+			f->pen, (bh_words){ l->text, 6.5, false, BH_AT_LEFT, 0 });
 		n++;
 	}
 	qsort(labels, n, sizeof *labels, by_x);
@@ -191,17 +197,19 @@ static void name_targets(const figure *f)
 		if (row == ROWS)
 			continue;
 		free_from[row] = l->left + l->width + 6;
-		bh_pen_words(f->pen, (bh_words){ l->text, 6.5, false, BH_AT_LEFT, 0 }, l->left,
-			     f->plot.y - 13 - 9 * row, l->width + 2);
+		bh_pen_words(f->pen, (bh_words){ l->text, 6.5, false, BH_AT_LEFT, 0 },
+			     l->left, f->plot.y - 13 - 9 * row, l->width + 2);
 	}
 }
 
 void bh_page_figure(bh_pen *pen, const bh_plan *plan, bh_box box)
 {
-	figure f = { pen, plan,
+	figure f = { pen,
+		     plan,
 		     { box.x + margin, box.y + head + 8, box.width - margin,
 		       box.height - head - foot - 8 },
-		     0, 1 };
+		     0,
+		     1 };
 
 	if (plan->pattern_count == 0)
 		return;

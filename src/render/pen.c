@@ -53,8 +53,8 @@ static cairo_surface_t *surface_of(bh_pen *pen, size_t pages, const char *title)
 		return cairo_recording_surface_create(CAIRO_CONTENT_COLOR, NULL);
 	switch (pen->kind) {
 	case BH_PAGE_SVG:
-		surface = cairo_svg_surface_create_for_stream(collect, &pen->bytes, BH_PAGE_WIDTH,
-							      height);
+		surface = cairo_svg_surface_create_for_stream(collect, &pen->bytes,
+							      BH_PAGE_WIDTH, height);
 		cairo_svg_surface_set_document_unit(surface, CAIRO_SVG_UNIT_PT);
 		return surface;
 	case BH_PAGE_PNG:
@@ -62,8 +62,8 @@ static cairo_surface_t *surface_of(bh_pen *pen, size_t pages, const char *title)
 						  (int)(BH_PAGE_WIDTH * png_scale),
 						  (int)(height * png_scale));
 	default:
-		surface = cairo_pdf_surface_create_for_stream(collect, &pen->bytes, BH_PAGE_WIDTH,
-							      BH_PAGE_HEIGHT);
+		surface = cairo_pdf_surface_create_for_stream(
+			collect, &pen->bytes, BH_PAGE_WIDTH, BH_PAGE_HEIGHT);
 		cairo_pdf_surface_set_metadata(surface, CAIRO_PDF_METADATA_TITLE, title);
 		cairo_pdf_surface_set_metadata(surface, CAIRO_PDF_METADATA_CREATOR,
 					       "beamhour " BH_VERSION);
@@ -82,7 +82,8 @@ bh_pen *bh_pen_open(bh_page_kind kind, bool measuring, size_t pages, const char 
 
 	if (!have_font()) {
 		bh_fail(err, BH_BAD_SYSTEM,
-			"the font DejaVu Sans is missing\non Debian: apt-get install fonts-dejavu-core");
+			"the font DejaVu Sans is missing\non Debian: apt-get install "
+			"fonts-dejavu-core");
 		return NULL;
 	}
 	pen = calloc(1, sizeof *pen);
@@ -116,7 +117,7 @@ static void prepare(bh_pen *pen, bh_words words, double width)
 	pango_font_description_set_family(font, family);
 	pango_font_description_set_absolute_size(font, words.size * PANGO_SCALE);
 	pango_font_description_set_weight(font, words.bold ? PANGO_WEIGHT_BOLD
-							    : PANGO_WEIGHT_NORMAL);
+							   : PANGO_WEIGHT_NORMAL);
 	pango_layout_set_font_description(pen->layout, font);
 	pango_font_description_free(font);
 	pango_layout_set_wrap(pen->layout, PANGO_WRAP_WORD_CHAR);
@@ -169,7 +170,8 @@ static void stroke_path(bh_pen *pen, bh_stroke stroke)
 	cairo_stroke(pen->cairo);
 }
 
-void bh_pen_line(bh_pen *pen, double x1, double y1, double x2, double y2, bh_stroke stroke)
+void bh_pen_line(bh_pen *pen, double x1, double y1, double x2, double y2,
+		 bh_stroke stroke)
 {
 	cairo_move_to(pen->cairo, x1, y1);
 	cairo_line_to(pen->cairo, x2, y2);
@@ -205,8 +207,8 @@ void bh_pen_curve(bh_pen *pen, const double *x, const double *y, size_t count,
 	stroke_path(pen, stroke);
 }
 
-void bh_pen_area(bh_pen *pen, const double *x, const double *y, size_t count, double base_y,
-		 double grey)
+void bh_pen_area(bh_pen *pen, const double *x, const double *y, size_t count,
+		 double base_y, double grey)
 {
 	if (count == 0)
 		return;
@@ -248,7 +250,8 @@ static bool finish(bh_pen *pen)
 		cairo_show_page(pen->cairo);
 	status = cairo_status(pen->cairo);
 	if (!pen->measuring && pen->kind == BH_PAGE_PNG && status == CAIRO_STATUS_SUCCESS)
-		status = cairo_surface_write_to_png_stream(pen->surface, collect, &pen->bytes);
+		status = cairo_surface_write_to_png_stream(pen->surface, collect,
+							   &pen->bytes);
 	g_object_unref(pen->layout);
 	cairo_destroy(pen->cairo);
 	cairo_surface_finish(pen->surface);

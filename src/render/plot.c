@@ -39,7 +39,9 @@ static void highest(double top_cps[MOST], const axis *a)
 
 static void bars(bh_text *text, const axis *a, const double top_cps[MOST])
 {
-	static const char *const blocks[] = { " ", "▁", "▂", "▃", "▄", "▅", "▆", "▇", "█" };
+	static const char *const blocks[] = {
+		" ", "▁", "▂", "▃", "▄", "▅", "▆", "▇", "█"
+	};
 	double most = 0, least = HUGE_VAL, root, span;
 
 	for (size_t i = 0; i < a->width; i++) {
@@ -57,14 +59,17 @@ static void bars(bh_text *text, const axis *a, const double top_cps[MOST])
 						     : 0;
 
 		if (at > 0)
-			bh_text_format(text, "%*s ", MARGIN - 1, bh_fmt_digits(room, at, 2));
+			bh_text_format(text, "%*s ", MARGIN - 1,
+				       bh_fmt_digits(room, at, 2));
 		else
 			bh_text_repeat(text, " ", MARGIN);
 		for (size_t i = 0; i < a->width; i++) {
-			double eighths = (sqrt(top_cps[i]) - root) / span * HEIGHT * 8 - line * 8;
+			double eighths =
+				(sqrt(top_cps[i]) - root) / span * HEIGHT * 8 - line * 8;
 
-			bh_text_add(text, blocks[eighths <= 0 ? 0 : eighths >= 8 ? 8
-								   : (int)(eighths + 0.5)]);
+			bh_text_add(text, blocks[eighths <= 0	? 0
+						 : eighths >= 8 ? 8
+								: (int)(eighths + 0.5)]);
 		}
 		while (text->length && text->bytes[text->length - 1] == ' ')
 			text->bytes[--text->length] = '\0';
@@ -113,7 +118,8 @@ static void numbers(bh_text *text, const axis *a)
 	size_t at = 0;
 
 	bh_text_repeat(text, " ", MARGIN);
-	for (double x = ceil(a->from_deg / step) * step; x < a->from_deg + span; x += step) {
+	for (double x = ceil(a->from_deg / step) * step; x < a->from_deg + span;
+	     x += step) {
 		char label[16];
 		size_t column = column_of(a, x), n;
 
@@ -136,12 +142,14 @@ void bh_plot(bh_text *text, const bh_plan *plan, size_t columns)
 
 	if (plan->pattern_count == 0)
 		return;
-	a.per_column_deg = (plan->pattern_to_deg - plan->pattern_from_deg) / (double)a.width;
+	a.per_column_deg =
+		(plan->pattern_to_deg - plan->pattern_from_deg) / (double)a.width;
 	highest(top_cps, &a);
 	for (size_t i = 0; i < a.width; i++)
 		most = fmax(most, top_cps[i]);
 	if (plan->signal.rates_known && most > 0) {
-		bh_text_add(text, "  counts/s in one aperture, square-root scale from the lowest background\n");
+		bh_text_add(text, "  counts/s in one aperture, square-root scale from "
+				  "the lowest background\n");
 		bars(text, &a, top_cps);
 	}
 	numbers(text, &a);

@@ -58,8 +58,8 @@ const char *bh_put_duration(bh_builder *b, double seconds)
 bh_section *bh_put_section(bh_builder *b, bh_part part, const char *title)
 {
 	bh_sheet *sheet = b->sheet;
-	bh_section *grown = bh_grow(b->arena, sheet->sections, bh_section, sheet->section_count,
-				    sheet->section_count + 1);
+	bh_section *grown = bh_grow(b->arena, sheet->sections, bh_section,
+				    sheet->section_count, sheet->section_count + 1);
 
 	if (!grown) {
 		b->lost = true;
@@ -86,7 +86,8 @@ void bh_put_item(bh_builder *b, bh_section *section, bh_item item)
 	grown[section->item_count++] = item;
 }
 
-void bh_put_columns(bh_builder *b, bh_section *section, const bh_column *columns, size_t count)
+void bh_put_columns(bh_builder *b, bh_section *section, const bh_column *columns,
+		    size_t count)
 {
 	if (!section)
 		return;
@@ -107,7 +108,8 @@ void bh_put_row(bh_builder *b, bh_section *section, const char *const *cells)
 	if (!section)
 		return;
 	table = &section->table;
-	grown = bh_grow(b->arena, table->cells, const char *, table->row_count * table->column_count,
+	grown = bh_grow(b->arena, table->cells, const char *,
+			table->row_count * table->column_count,
 			(table->row_count + 1) * table->column_count);
 	if (!grown) {
 		b->lost = true;
@@ -141,14 +143,14 @@ bool bh_sheet_make(bh_sheet *sheet, bh_arena *arena, const bh_plan *plan, bh_err
 	*sheet = (bh_sheet){ .title = title_of(plan) };
 	sheet->subtitle = bh_put(&b, "Scan plan for %s, %s tube", plan->instrument->name,
 				 plan->signal.setting.tube->anode->symbol);
-	sheet->setting = bh_put(&b, "%s  %s kV  %s mA%s", plan->signal.setting.tube->anode->symbol,
-				bh_put_short(&b, plan->signal.setting.kV, 3),
-				bh_put_short(&b, plan->signal.setting.mA, 3),
-				plan->signal.setting.divergence_deg > 0
-					? bh_put(&b, "  slit %s°",
-						 bh_put_short(&b, plan->signal.setting.divergence_deg,
-							      3))
-					: "");
+	sheet->setting = bh_put(
+		&b, "%s  %s kV  %s mA%s", plan->signal.setting.tube->anode->symbol,
+		bh_put_short(&b, plan->signal.setting.kV, 3),
+		bh_put_short(&b, plan->signal.setting.mA, 3),
+		plan->signal.setting.divergence_deg > 0
+			? bh_put(&b, "  slit %s°",
+				 bh_put_short(&b, plan->signal.setting.divergence_deg, 3))
+			: "");
 	sheet->time = bh_put_duration(&b, plan->times.total_s);
 	bh_sheet_answer(&b);
 	bh_put_section(&b, BH_PART_PATTERN, "Pattern");
@@ -165,14 +167,16 @@ bool bh_sheet_make(bh_sheet *sheet, bh_arena *arena, const bh_plan *plan, bh_err
 	return !b.lost || bh_fail_memory(err);
 }
 
-bool bh_sheet_reflections(bh_sheet *sheet, bh_arena *arena, const bh_plan *plan, bh_err *err)
+bool bh_sheet_reflections(bh_sheet *sheet, bh_arena *arena, const bh_plan *plan,
+			  bh_err *err)
 {
 	bh_builder b = { arena, plan, sheet, false };
 
 	*sheet = (bh_sheet){ .title = title_of(plan) };
-	sheet->subtitle = bh_put(&b, "Reflections on %s, %s Kα1 %.6f Å", plan->instrument->name,
-				 plan->signal.setting.tube->anode->symbol,
-				 plan->signal.radiation.lines[0].wavelength_A);
+	sheet->subtitle =
+		bh_put(&b, "Reflections on %s, %s Kα1 %.6f Å", plan->instrument->name,
+		       plan->signal.setting.tube->anode->symbol,
+		       plan->signal.radiation.lines[0].wavelength_A);
 	bh_sheet_reflection_table(&b, plan->signal.in_range_count);
 	return !b.lost || bh_fail_memory(err);
 }

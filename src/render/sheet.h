@@ -15,29 +15,39 @@ typedef enum { BH_LEFT, BH_RIGHT } bh_align;
 
 typedef struct {
 	const char *head;
-	const char *unit;      /* "" none */
+	const char *unit; /* "" none */
 	bh_align align;
-	bool wide;             /* left out where there is little room */
+	bool wide; /* left out where there is little room */
 } bh_column;
 
 typedef struct {
 	bh_column *columns;
 	size_t column_count;
-	const char **cells;    /* row by row */
+	const char **cells; /* row by row */
 	size_t row_count;
 } bh_table;
 
 typedef enum {
-	BH_PART_ANSWER, BH_PART_PATTERN, BH_PART_RANGES, BH_PART_TARGETS, BH_PART_AIMS,
-	BH_PART_FINDINGS, BH_PART_REFLECTIONS, BH_PART_STEPS, BH_PART_NOTES,
-	BH_PART_CAUTIONS, BH_PART_SIGN_OFF, BH_PART_WHY, BH_PARTS
+	BH_PART_ANSWER,
+	BH_PART_PATTERN,
+	BH_PART_RANGES,
+	BH_PART_TARGETS,
+	BH_PART_AIMS,
+	BH_PART_FINDINGS,
+	BH_PART_REFLECTIONS,
+	BH_PART_STEPS,
+	BH_PART_NOTES,
+	BH_PART_CAUTIONS,
+	BH_PART_SIGN_OFF,
+	BH_PART_WHY,
+	BH_PARTS
 } bh_part;
 
 typedef struct {
-	const char *lead;      /* bold start, e.g. severity or label; "" none */
+	const char *lead; /* bold start, e.g. severity or label; "" none */
 	const char *text;
-	const char *then;      /* the remedy; "" none                         */
-	int weight;            /* 0 plain, 1 caution, 2 severe                */
+	const char *then; /* the remedy; "" none                         */
+	int weight;	  /* 0 plain, 1 caution, 2 severe                */
 } bh_item;
 
 typedef struct {
@@ -45,14 +55,14 @@ typedef struct {
 	const char *title;
 	bh_item *items;
 	size_t item_count;
-	bh_table table;        /* row_count 0: none */
+	bh_table table; /* row_count 0: none */
 } bh_section;
 
 typedef struct {
 	const char *title;
 	const char *subtitle;
-	const char *setting;   /* "Cu  40 kV  40 mA", to read at arm's length */
-	const char *time;      /* "3 h 35 min"                               */
+	const char *setting; /* "Cu  40 kV  40 mA", to read at arm's length */
+	const char *time;    /* "3 h 35 min"                               */
 	bh_section *sections;
 	size_t section_count;
 } bh_sheet;

@@ -16,7 +16,8 @@ const char *bh_put_kbeta(bh_builder *b)
 	const char *foil = "", *mono = "";
 
 	if (tube->foil_z)
-		foil = bh_put(b, "%s foil %s µm on the %s side", bh_element_symbol(tube->foil_z),
+		foil = bh_put(b, "%s foil %s µm on the %s side",
+			      bh_element_symbol(tube->foil_z),
 			      bh_put_short(b, tube->foil_um, 3),
 			      tube->foil_side == BH_SIDE_TUBE ? "tube's" : "detector's");
 	if (crystal->two_theta_deg > 0)
@@ -45,22 +46,25 @@ static const char *setting_words(bh_builder *b)
 	const bh_setting *s = &b->plan->signal.setting;
 
 	return bh_put(b, "%s, %s kV, %s mA; slit %s", s->tube->anode->symbol,
-		      bh_put_short(b, s->kV, 3), bh_put_short(b, s->mA, 3), bh_put_slit(b));
+		      bh_put_short(b, s->kV, 3), bh_put_short(b, s->mA, 3),
+		      bh_put_slit(b));
 }
 
 static const char *detector_words(bh_builder *b)
 {
 	const bh_instrument *instrument = b->plan->instrument;
 	const bh_setting *s = &b->plan->signal.setting;
-	const char *kind = instrument->detector.kind == BH_DETECTOR_STRIP
-				   ? bh_put(b, "strip, %zu channels of %s°",
-					    instrument->detector.channels,
-					    bh_put_digits(b, b->plan->signal.aperture_deg, 3))
-				   : bh_put(b, "receiving slit %s mm (%s°)",
-					    bh_put_short(b, instrument->detector.aperture_mm, 3),
-					    bh_put_digits(b, b->plan->signal.aperture_deg, 3));
+	const char *kind =
+		instrument->detector.kind == BH_DETECTOR_STRIP
+			? bh_put(b, "strip, %zu channels of %s°",
+				 instrument->detector.channels,
+				 bh_put_digits(b, b->plan->signal.aperture_deg, 3))
+			: bh_put(b, "receiving slit %s mm (%s°)",
+				 bh_put_short(b, instrument->detector.aperture_mm, 3),
+				 bh_put_digits(b, b->plan->signal.aperture_deg, 3));
 
-	return bh_put(b, "%s; pulses of %s to %s keV", kind, bh_put_fixed(b, s->window_low_keV, 2),
+	return bh_put(b, "%s; pulses of %s to %s keV", kind,
+		      bh_put_fixed(b, s->window_low_keV, 2),
 		      bh_put_fixed(b, s->window_high_keV, 2));
 }
 
@@ -92,7 +96,8 @@ static const char *unsure_words(bh_builder *b)
 
 	if (plan->unsure_count == 0)
 		return "";
-	return bh_put(b, "%s to %s until the throughput is measured (factor %s either way)",
+	return bh_put(b,
+		      "%s to %s until the throughput is measured (factor %s either way)",
 		      bh_put_duration(b, plan->unsure[0].wall_low_s),
 		      bh_put_duration(b, plan->unsure[0].wall_high_s),
 		      bh_put_short(b, plan->unsure[0].factor, 2));
@@ -104,9 +109,10 @@ static const char *matter_words(bh_builder *b)
 
 	if (!signal->rates_known)
 		return "composition not known: positions only";
-	return bh_put(b, "X-ray density %s g/cm³; μ/ρ %s cm²/g at Kα1",
-		      bh_put_fixed(b, signal->density_g_cm3, 3),
-		      bh_put_digits(b, signal->radiation.lines[0].mass_attenuation_cm2_g, 4));
+	return bh_put(
+		b, "X-ray density %s g/cm³; μ/ρ %s cm²/g at Kα1",
+		bh_put_fixed(b, signal->density_g_cm3, 3),
+		bh_put_digits(b, signal->radiation.lines[0].mass_attenuation_cm2_g, 4));
 }
 
 void bh_sheet_answer(bh_builder *b)
@@ -118,13 +124,17 @@ void bh_sheet_answer(bh_builder *b)
 	for (size_t i = 0; i < plan->finding_count; i++)
 		severe += plan->findings[i].severity == BH_SEVERE;
 	if (plan->booking_short)
-		bh_put_item(b, s,
-			    (bh_item){ .lead = "too short",
-				       .text = bh_put(b, "all aims would take %s; the booking has %s",
-						      bh_put_duration(b, plan->wanted_total_s),
-						      bh_put_duration(b, plan->request->booking.longest_s)),
-				       .then = "",
-				       .weight = 2 });
+		bh_put_item(
+			b, s,
+			(bh_item){ .lead = "too short",
+				   .text = bh_put(
+					   b,
+					   "all aims would take %s; the booking has %s",
+					   bh_put_duration(b, plan->wanted_total_s),
+					   bh_put_duration(
+						   b, plan->request->booking.longest_s)),
+				   .then = "",
+				   .weight = 2 });
 	say(b, s, "tube", setting_words(b));
 	say(b, s, "Kβ", bh_put_kbeta(b));
 	say(b, s, "detector", detector_words(b));
@@ -134,6 +144,6 @@ void bh_sheet_answer(bh_builder *b)
 		say(b, s, "or", unsure_words(b));
 	say(b, s, "aims",
 	    bh_put(b, "%zu of %zu met; %zu finding%s, %zu of them severe", met(plan),
-		   plan->aim_count, plan->finding_count, plan->finding_count == 1 ? "" : "s",
-		   severe));
+		   plan->aim_count, plan->finding_count,
+		   plan->finding_count == 1 ? "" : "s", severe));
 }

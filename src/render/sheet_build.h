@@ -12,7 +12,8 @@ typedef struct {
 } bh_builder;
 
 /* Text in the sheet's arena; "" when memory is out (lost is set). */
-const char *bh_put(bh_builder *b, const char *format, ...) __attribute__((format(printf, 2, 3)));
+const char *bh_put(bh_builder *b, const char *format, ...)
+	__attribute__((format(printf, 2, 3)));
 const char *bh_put_digits(bh_builder *b, double value, int digits);
 const char *bh_put_short(bh_builder *b, double value, int digits);
 const char *bh_put_fixed(bh_builder *b, double value, int decimals);
@@ -23,7 +24,8 @@ bh_section *bh_put_section(bh_builder *b, bh_part part, const char *title);
 void bh_put_item(bh_builder *b, bh_section *section, bh_item item);
 
 /* A table's columns, then its rows cell by cell. */
-void bh_put_columns(bh_builder *b, bh_section *section, const bh_column *columns, size_t count);
+void bh_put_columns(bh_builder *b, bh_section *section, const bh_column *columns,
+		    size_t count);
 void bh_put_row(bh_builder *b, bh_section *section, const char *const *cells);
 
 /* "quartz 1 0 1", "unknown 3.29 Å" */

@@ -29,45 +29,62 @@ void bh_sheet_ranges(bh_builder *b)
 		{ "for", "", BH_LEFT, false },
 	};
 	const bh_plan *plan = b->plan;
-	bh_section *s = bh_put_section(b, BH_PART_RANGES, "Ranges, as typed at the machine");
+	bh_section *s =
+		bh_put_section(b, BH_PART_RANGES, "Ranges, as typed at the machine");
 
 	bh_put_columns(b, s, columns, COUNT(columns));
 	for (size_t i = 0; i < plan->range_count; i++) {
 		const bh_range *r = &plan->ranges[i];
 		const char *cells[COUNT(columns)] = {
-			bh_put_fixed(b, r->from_deg, 1), bh_put_fixed(b, r->to_deg, 1),
-			bh_put_short(b, r->step_deg, 3), bh_put_short(b, r->time_per_step_s, 2),
-			speed(b, r), bh_put(b, "%zu", r->steps),
-			bh_put_digits(b, r->exposure_s, 2), bh_put_duration(b, r->wall_s),
+			bh_put_fixed(b, r->from_deg, 1),
+			bh_put_fixed(b, r->to_deg, 1),
+			bh_put_short(b, r->step_deg, 3),
+			bh_put_short(b, r->time_per_step_s, 2),
+			speed(b, r),
+			bh_put(b, "%zu", r->steps),
+			bh_put_digits(b, r->exposure_s, 2),
+			bh_put_duration(b, r->wall_s),
 			r->purpose,
 		};
 
 		bh_put_row(b, s, cells);
 	}
 	if (plan->range_count == 0)
-		bh_put_item(b, s, (bh_item){ .lead = "", .text = "No range: no aim has a rate to plan "
-								 "a count time for.", .then = "" });
-	if (plan->step_reason)
-		bh_put_item(b, s, (bh_item){ .lead = "step", .text = plan->step_reason, .then = "" });
-	if (plan->instrument->detector.kind == BH_DETECTOR_STRIP)
 		bh_put_item(b, s,
-			    (bh_item){ .lead = "exposure",
-				       .text = bh_put(b, "channel·s per step; a moving strip runs in and "
-							 "out %s° beyond each range, its time is in",
-						      bh_put_digits(b, plan->signal.aperture_deg *
-									       (double)plan->instrument
-										       ->detector
-										       .channels /
-									       2, 2)),
+			    (bh_item){ .lead = "",
+				       .text = "No range: no aim has a rate to plan "
+					       "a count time for.",
 				       .then = "" });
+	if (plan->step_reason)
+		bh_put_item(b, s,
+			    (bh_item){ .lead = "step",
+				       .text = plan->step_reason,
+				       .then = "" });
+	if (plan->instrument->detector.kind == BH_DETECTOR_STRIP)
+		bh_put_item(
+			b, s,
+			(bh_item){
+				.lead = "exposure",
+				.text = bh_put(
+					b,
+					"channel·s per step; a moving strip runs in and "
+					"out %s° beyond each range, its time is in",
+					bh_put_digits(
+						b,
+						plan->signal.aperture_deg *
+							(double)plan->instrument->detector
+								.channels /
+							2,
+						2)),
+				.then = "" });
 }
 
 void bh_sheet_aims(bh_builder *b)
 {
 	static const bh_column columns[] = {
-		{ "aim", "", BH_LEFT, false },	     { "wanted", "", BH_RIGHT, false },
+		{ "aim", "", BH_LEFT, false },	      { "wanted", "", BH_RIGHT, false },
 		{ "predicted", "", BH_RIGHT, false }, { "floor", "", BH_RIGHT, false },
-		{ "unit", "", BH_LEFT, false },	     { "met", "", BH_LEFT, false },
+		{ "unit", "", BH_LEFT, false },	      { "met", "", BH_LEFT, false },
 		{ "price", "", BH_RIGHT, false },
 	};
 	const bh_plan *plan = b->plan;
@@ -86,30 +103,38 @@ void bh_sheet_aims(bh_builder *b)
 			a->computed ? bh_put_digits(b, a->predicted, 2) : "–",
 			floor ? bh_put_digits(b, a->floor, 1) : "–",
 			a->unit,
-			!a->computed ? "not known" : a->met ? "yes" : a->reachable ? "no"
-										   : "not by counting",
+			!a->computed   ? "not known"
+			: a->met       ? "yes"
+			: a->reachable ? "no"
+				       : "not by counting",
 			a->computed ? bh_put_duration(b, a->price_s) : "–",
 		};
 
 		bh_put_row(b, s, cells);
 	}
-	bh_put_item(b, s, (bh_item){ .lead = "floor",
-				     .text = "what no count time gets below: grains, and neighbours "
-					     "known to 50 %",
-				     .then = "" });
-	bh_put_item(b, s, (bh_item){ .lead = "price",
-				     .text = "counting time that dropping this aim alone would save",
-				     .then = "" });
+	bh_put_item(
+		b, s,
+		(bh_item){
+			.lead = "floor",
+			.text = "what no count time gets below: grains, and neighbours "
+				"known to 50 %",
+			.then = "" });
+	bh_put_item(
+		b, s,
+		(bh_item){
+			.lead = "price",
+			.text = "counting time that dropping this aim alone would save",
+			.then = "" });
 }
 
 void bh_sheet_targets(bh_builder *b)
 {
 	static const bh_column columns[] = {
-		{ "target", "", BH_LEFT, false },	 { "Kα1", "°2θ", BH_RIGHT, false },
-		{ "FWHM", "°", BH_RIGHT, false },	 { "top", "/s", BH_RIGHT, false },
-		{ "below", "/s", BH_RIGHT, false },	 { "own", "%", BH_RIGHT, false },
-		{ "overlap", "×", BH_RIGHT, false },	 { "counts", "", BH_RIGHT, false },
-		{ "error", "%", BH_RIGHT, false },	 { "grains", "", BH_RIGHT, true },
+		{ "target", "", BH_LEFT, false },    { "Kα1", "°2θ", BH_RIGHT, false },
+		{ "FWHM", "°", BH_RIGHT, false },    { "top", "/s", BH_RIGHT, false },
+		{ "below", "/s", BH_RIGHT, false },  { "own", "%", BH_RIGHT, false },
+		{ "overlap", "×", BH_RIGHT, false }, { "counts", "", BH_RIGHT, false },
+		{ "error", "%", BH_RIGHT, false },   { "grains", "", BH_RIGHT, true },
 	};
 	const bh_plan *plan = b->plan;
 	bh_section *s;
@@ -132,7 +157,8 @@ void bh_sheet_targets(bh_builder *b)
 			rate ? bh_put_fixed(b, 100 * t->purity_frac, 0) : "–",
 			rate ? bh_put_fixed(b, t->overlap_price, 2) : "–",
 			counted ? bh_put_digits(b, t->expected_counts, 2) : "–",
-			counted ? bh_put_digits(b, 100 * t->predicted_error_frac, 2) : "–",
+			counted ? bh_put_digits(b, 100 * t->predicted_error_frac, 2)
+				: "–",
 			!(t->grains > 0)  ? "–"
 			: t->grains < 1e6 ? bh_put_digits(b, t->grains, 2)
 					  : "> 10⁶",
@@ -140,14 +166,18 @@ void bh_sheet_targets(bh_builder *b)
 
 		bh_put_row(b, s, cells);
 	}
-	bh_put_item(b, s, (bh_item){ .lead = "top, below",
-				     .text = "net height of the recorded peak, and the background "
-					     "under it",
-				     .then = "" });
-	bh_put_item(b, s, (bh_item){ .lead = "own, overlap",
-				     .text = "own share of the net counts in the line's window; factor "
-					     "in count time that its neighbours cost",
-				     .then = "" });
+	bh_put_item(
+		b, s,
+		(bh_item){ .lead = "top, below",
+			   .text = "net height of the recorded peak, and the background "
+				   "under it",
+			   .then = "" });
+	bh_put_item(b, s,
+		    (bh_item){ .lead = "own, overlap",
+			       .text = "own share of the net counts in the line's "
+				       "window; factor "
+				       "in count time that its neighbours cost",
+			       .then = "" });
 }
 
 /* Rows of a short table: every target, then the strongest of each phase's own scale. */
@@ -168,8 +198,10 @@ static bool *choose(bh_builder *b, size_t most)
 		size_t best = SIZE_MAX;
 
 		for (size_t i = 0; i < signal->in_range_count; i++)
-			if (!chosen[i] && (best == SIZE_MAX || signal->reflections[i].rate_cps_deg >
-								      signal->reflections[best].rate_cps_deg))
+			if (!chosen[i] &&
+			    (best == SIZE_MAX ||
+			     signal->reflections[i].rate_cps_deg >
+				     signal->reflections[best].rate_cps_deg))
 				best = i;
 		chosen[best] = ++count;
 	}
@@ -180,8 +212,8 @@ void bh_sheet_reflection_table(bh_builder *b, size_t most)
 {
 	static const bh_column columns[] = {
 		{ "reflection", "", BH_LEFT, false }, { "", "", BH_LEFT, false },
-		{ "d", "Å", BH_RIGHT, false },	       { "2θ", "°", BH_RIGHT, false },
-		{ "m", "", BH_RIGHT, false },	       { "|F|²", "", BH_RIGHT, false },
+		{ "d", "Å", BH_RIGHT, false },	      { "2θ", "°", BH_RIGHT, false },
+		{ "m", "", BH_RIGHT, false },	      { "|F|²", "", BH_RIGHT, false },
 		{ "FWHM", "°", BH_RIGHT, true },      { "rate", "°/s", BH_RIGHT, false },
 		{ "rel.", "%", BH_RIGHT, false },
 	};
@@ -210,10 +242,14 @@ void bh_sheet_reflection_table(bh_builder *b, size_t most)
 			bh_put_row(b, s, cells);
 	}
 	if (signal->in_range_count > most)
-		bh_put_item(b, s,
-			    (bh_item){ .lead = "",
-				       .text = bh_put(b, "* asked for. The strongest %zu of %zu; all of "
-							 "them: beamhour reflections",
-						      most, signal->in_range_count),
-				       .then = "" });
+		bh_put_item(
+			b, s,
+			(bh_item){
+				.lead = "",
+				.text = bh_put(
+					b,
+					"* asked for. The strongest %zu of %zu; all of "
+					"them: beamhour reflections",
+					most, signal->in_range_count),
+				.then = "" });
 }

@@ -18,8 +18,9 @@ void bh_sheet_findings(bh_builder *b)
 		const bh_finding *f = &plan->findings[i];
 
 		bh_put_item(b, s,
-			    (bh_item){ .lead = bh_put(b, "%s: %s%s%s", words[f->severity], f->kind,
-						      *f->where ? ", " : "", f->where),
+			    (bh_item){ .lead = bh_put(b, "%s: %s%s%s", words[f->severity],
+						      f->kind, *f->where ? ", " : "",
+						      f->where),
 				       .text = f->text,
 				       .then = f->remedy,
 				       .weight = (int)f->severity });
@@ -36,7 +37,9 @@ static void step_ranges(bh_builder *b, bh_section *s)
 		say(b, s, "scout scan", plan->scout);
 	if (plan->range_count)
 		say(b, s, "ranges",
-		    bh_put(b, "Type in the %zu range%s of the table, in that order, and start.",
+		    bh_put(b,
+			   "Type in the %zu range%s of the table, in that order, and "
+			   "start.",
 			   plan->range_count, plan->range_count == 1 ? "" : "s"));
 }
 
@@ -49,32 +52,42 @@ void bh_sheet_steps(bh_builder *b)
 	bh_section *s = bh_put_section(b, BH_PART_STEPS, "Set-up, in order");
 
 	say(b, s, "generator",
-	    bh_put(b, "%s tube to %s kV and %s mA, as the lab's procedure says; let it settle for %s.",
+	    bh_put(b,
+		   "%s tube to %s kV and %s mA, as the lab's procedure says; let it "
+		   "settle for %s.",
 		   set->tube->anode->symbol, bh_put_short(b, set->kV, 3),
-		   bh_put_short(b, set->mA, 3), bh_put_duration(b, instrument->warm_up_s)));
+		   bh_put_short(b, set->mA, 3),
+		   bh_put_duration(b, instrument->warm_up_s)));
 	say(b, s, "optics",
 	    bh_put(b, "%s; %s; axial slits %s and %s.", bh_put_slit(b), bh_put_kbeta(b),
 		   instrument->soller_tube_deg > 0
-			   ? bh_put(b, "%s°", bh_put_short(b, instrument->soller_tube_deg, 3))
+			   ? bh_put(b, "%s°",
+				    bh_put_short(b, instrument->soller_tube_deg, 3))
 			   : "none",
 		   instrument->soller_detector_deg > 0
-			   ? bh_put(b, "%s°", bh_put_short(b, instrument->soller_detector_deg, 3))
+			   ? bh_put(b, "%s°",
+				    bh_put_short(b, instrument->soller_detector_deg, 3))
 			   : "none"));
 	say(b, s, "specimen",
-	    bh_put(b, "%s holder, %s × %s mm, %s mm deep; surface flat and level with the rim (0.1 mm "
-		      "low shifts a line at 30° by %s°)%s.",
+	    bh_put(b,
+		   "%s holder, %s × %s mm, %s mm deep; surface flat and level with the "
+		   "rim (0.1 mm "
+		   "low shifts a line at 30° by %s°)%s.",
 		   specimen->holder, bh_put_short(b, specimen->length_mm, 3),
 		   bh_put_short(b, specimen->width_mm, 3),
 		   bh_put_short(b, specimen->thickness_mm, 3),
 		   bh_put_fixed(b, -11.068 / instrument->radius_mm, 3),
 		   specimen->spin ? "; spinner on" : ""));
 	say(b, s, "reference",
-	    bh_put(b, "Scan a line of the lab's reference plate (%s). If its position or rate is off by "
-		      "more than the lab allows, stop and ask.",
+	    bh_put(b,
+		   "Scan a line of the lab's reference plate (%s). If its position or "
+		   "rate is off by "
+		   "more than the lab allows, stop and ask.",
 		   bh_put_duration(b, instrument->reference_check_s)));
 	step_ranges(b, s);
 	say(b, s, "end",
-	    "Save the data with this plan's title. Set the generator to the lab's idle setting, close "
+	    "Save the data with this plan's title. Set the generator to the lab's idle "
+	    "setting, close "
 	    "the shutter, take the specimen out, clean up, sign the log.");
 }
 
@@ -112,8 +125,8 @@ void bh_sheet_why(bh_builder *b)
 
 		bh_put_item(b, s,
 			    (bh_item){ .lead = w->what,
-				       .text = bh_put(b, "%s. %s, with %s.", w->value, w->equation,
-						      w->inputs),
+				       .text = bh_put(b, "%s. %s, with %s.", w->value,
+						      w->equation, w->inputs),
 				       .then = w->source });
 	}
 }

@@ -41,9 +41,10 @@ static size_t fitting(const char *text, size_t width)
 
 		while (((unsigned char)text[next] & 0xC0) == 0x80)
 			next++;
-		used += bh_text_columns((char[5]){ text[i], next > i + 1 ? text[i + 1] : '\0',
-						   next > i + 2 ? text[i + 2] : '\0',
-						   next > i + 3 ? text[i + 3] : '\0', '\0' });
+		used += bh_text_columns(
+			(char[5]){ text[i], next > i + 1 ? text[i + 1] : '\0',
+				   next > i + 2 ? text[i + 2] : '\0',
+				   next > i + 3 ? text[i + 3] : '\0', '\0' });
 		if (used > width)
 			return last_blank ? last_blank : i ? i : next;
 		i = next;
@@ -191,7 +192,8 @@ static void fit(layout *l, const bh_table *t, size_t columns)
 	}
 }
 
-static void pad(const page *p, const char *text, size_t bytes, size_t width, bh_align align)
+static void pad(const page *p, const char *text, size_t bytes, size_t width,
+		bh_align align)
 {
 	size_t used = part_columns(text, bytes), left = width > used ? width - used : 0;
 
@@ -210,7 +212,8 @@ static void trim_line(bh_text *text)
 }
 
 /* One row over as many lines as its longest cell needs. */
-static void row(const page *p, const layout *l, const bh_table *t, const char *const *cells)
+static void row(const page *p, const layout *l, const bh_table *t,
+		const char *const *cells)
 {
 	const char *left[MOST_COLUMNS];
 	bool more = true;
@@ -225,7 +228,8 @@ static void row(const page *p, const layout *l, const bh_table *t, const char *c
 
 			if (i)
 				bh_text_add(p->to, "  ");
-			pad(p, left[i], bytes, l->width[i], t->columns[l->index[i]].align);
+			pad(p, left[i], bytes, l->width[i],
+			    t->columns[l->index[i]].align);
 			left[i] += bytes;
 			left[i] += strspn(left[i], " ");
 			more = more || *left[i];
@@ -311,7 +315,8 @@ bool bh_render_text(bh_text *text, const bh_plan *plan, bh_look look, bh_err *er
 	return good || bh_fail_memory(err);
 }
 
-bool bh_render_reflections_text(bh_text *text, const bh_plan *plan, bh_look look, bh_err *err)
+bool bh_render_reflections_text(bh_text *text, const bh_plan *plan, bh_look look,
+				bh_err *err)
 {
 	bh_arena *arena = bh_arena_new();
 	bh_sheet sheet;

@@ -335,8 +335,10 @@ static inline bh_phase crystal_make(bh_arena *arena, const crystal *c, double b_
 	for (size_t i = 0; i < CRYSTAL_SITES && c->sites[i].element; i++) {
 		bh_site *site = &phase.sites[phase.site_count++];
 
-		*site = (bh_site){ .z = bh_xray_z(c->sites[i].element), .occupancy = 1,
-				   .b_iso_A2 = b_iso_A2, .b_known = true };
+		*site = (bh_site){ .z = bh_xray_z(c->sites[i].element),
+				   .occupancy = 1,
+				   .b_iso_A2 = b_iso_A2,
+				   .b_known = true };
 		memcpy(site->at, c->sites[i].at, sizeof site->at);
 	}
 	assert_true(bh_structure_resolve(&phase, arena, &err));

@@ -26,7 +26,9 @@ static void footprint(void **state)
 	static const struct {
 		double divergence_deg, two_theta_deg, exact_mm, within_frac;
 	} rows[] = {
-		{ 0.5, 20, 12.069, 1e-3 }, { 1, 10, 48.55, 1e-3 }, { 0.25, 30, 4.046, 1e-3 },
+		{ 0.5, 20, 12.069, 1e-3 },
+		{ 1, 10, 48.55, 1e-3 },
+		{ 0.25, 30, 4.046, 1e-3 },
 	};
 
 	(void)state;
@@ -42,7 +44,8 @@ static void footprint(void **state)
 	{
 		double from = bh_geometry_full_from_deg(0.5, 240, 20);
 
-		assert_near(bh_geometry_lit_frac(0.5, 240, 20, from + 0.001), 1, 1e-9, "full");
+		assert_near(bh_geometry_lit_frac(0.5, 240, 20, from + 0.001), 1, 1e-9,
+			    "full");
 		assert_true(bh_geometry_lit_frac(0.5, 240, 20, from - 0.01) < 1);
 	}
 }
@@ -52,10 +55,14 @@ static void footprint(void **state)
 static void shifts(void **state)
 {
 	(void)state;
-	assert_near(bh_geometry_displacement_deg(0.1, 240, 28.44), -0.04628, 1e-5, "displaced");
-	assert_near(bh_geometry_displacement_deg(0.1, 240, 60), -0.04135, 1e-5, "displaced");
-	assert_near(bh_geometry_displacement_deg(0.1, 173, 26.64), -0.06446, 1e-5, "displaced");
-	assert_near(bh_geometry_transparency_deg(91.0, 240, 26.64), -0.00588, 1e-5, "quartz");
+	assert_near(bh_geometry_displacement_deg(0.1, 240, 28.44), -0.04628, 1e-5,
+		    "displaced");
+	assert_near(bh_geometry_displacement_deg(0.1, 240, 60), -0.04135, 1e-5,
+		    "displaced");
+	assert_near(bh_geometry_displacement_deg(0.1, 173, 26.64), -0.06446, 1e-5,
+		    "displaced");
+	assert_near(bh_geometry_transparency_deg(91.0, 240, 26.64), -0.00588, 1e-5,
+		    "quartz");
 	assert_near(bh_geometry_transparency_deg(7, 240, 30), -0.0853, 6e-5, "organic");
 	assert_near(bh_geometry_flat_deg(1, 28.44), -0.00574, 1e-5, "flat");
 }
@@ -67,8 +74,8 @@ static void lorentz_polarization(void **state)
 	static const struct {
 		double two_theta_deg, lp, with_crystal;
 	} rows[] = {
-		{ 20, 63.411, 0 },	{ 30, 27.046, 13.738 },	 { 40, 14.436, 0 },
-		{ 60, 5.7735, 3.0794 }, { 90, 2.8284, 1.5715 },	 { 120, 3.3333, 1.7779 },
+		{ 20, 63.411, 0 },	{ 30, 27.046, 13.738 }, { 40, 14.436, 0 },
+		{ 60, 5.7735, 3.0794 }, { 90, 2.8284, 1.5715 }, { 120, 3.3333, 1.7779 },
 		{ 150, 7.2469, 0 },
 	};
 	double a = pow(cos(bh_rad(26.58)), 2);
@@ -78,7 +85,8 @@ static void lorentz_polarization(void **state)
 	for (size_t i = 0; i < sizeof rows / sizeof *rows; i++) {
 		double theta = at(rows[i].two_theta_deg);
 
-		assert_ratio(2 * bh_geometry_lorentz_polarization(1, theta), rows[i].lp, 1e-4, "LP");
+		assert_ratio(2 * bh_geometry_lorentz_polarization(1, theta), rows[i].lp,
+			     1e-4, "LP");
 		if (rows[i].with_crystal > 0)
 			assert_ratio(bh_geometry_lorentz_polarization(a, theta),
 				     rows[i].with_crystal, 1e-3, "LP with crystal");
@@ -91,7 +99,9 @@ static void graphite(void **state)
 	static const struct {
 		const char *anode;
 		double two_theta_deg;
-	} rows[] = { { "Cu", 26.573 }, { "Co", 30.953 }, { "Cr", 39.935 }, { "Mo", 12.163 } };
+	} rows[] = {
+		{ "Cu", 26.573 }, { "Co", 30.953 }, { "Cr", 39.935 }, { "Mo", 12.163 }
+	};
 
 	(void)state;
 	for (size_t i = 0; i < 4; i++) {
@@ -120,8 +130,9 @@ static void depth(void **state)
 		assert_ratio(1000 * bh_geometry_depth_mm(0.99, rows[i].mu_inv_cm, 45),
 			     rows[i].depth_um, 0.04, "depth");
 	assert_ratio(bh_geometry_thick_mm(91, 1, 60), 3.2 * 0.5 / 9.1, 1e-9, "thick");
-	assert_near(1 - exp(-2 * 91 * bh_geometry_thick_mm(91, 1, 60) * BH_CM_PER_MM / 0.5),
-		    0.99834, 1e-5, "1 - exp(-6.4)");
+	assert_near(
+		1 - exp(-2 * 91 * bh_geometry_thick_mm(91, 1, 60) * BH_CM_PER_MM / 0.5),
+		0.99834, 1e-5, "1 - exp(-6.4)");
 }
 
 /* P. Thompson, D. E. Cox & J. B. Hastings, J. Appl. Cryst. 20 (1987) 79, evaluated by a second
@@ -152,24 +163,26 @@ static void pseudo_voigt(void **state)
 		assert_near(bh_profile_inside_frac(p, 500.5 * step), sum, 1e-4, "area");
 	}
 	/* share inside 1.5 FWHM in all: 0.92 Gaussian, 0.63 Lorentzian (closed forms) */
-	assert_near(bh_profile_inside_frac((bh_profile){ 1, 0 }, 0.75), erf(0.75 * 2 * sqrt(log(2))),
-		    1e-12, "Gaussian");
-	assert_near(bh_profile_inside_frac((bh_profile){ 1, 1 }, 0.75), 2 / BH_PI * atan(1.5),
-		    1e-12, "Lorentzian");
+	assert_near(bh_profile_inside_frac((bh_profile){ 1, 0 }, 0.75),
+		    erf(0.75 * 2 * sqrt(log(2))), 1e-12, "Gaussian");
+	assert_near(bh_profile_inside_frac((bh_profile){ 1, 1 }, 0.75),
+		    2 / BH_PI * atan(1.5), 1e-12, "Lorentzian");
 }
 
 /* G. Caglioti, A. Paoletti & F. P. Ricci, Nucl. Instrum. 3 (1958) 223, from memory, and
  * P. Scherrer 1918: worked numbers by a second program. */
 static void widths(void **state)
 {
-	bh_instrument i = { .gauss_tan2_deg2 = 0.01, .gauss_tan_deg2 = -0.005,
+	bh_instrument i = { .gauss_tan2_deg2 = 0.01,
+			    .gauss_tan_deg2 = -0.005,
 			    .gauss_0_deg2 = 0.004 };
 	bh_phase small = { .size_nm = 40.977 };
 	bh_instrument none = { .radius_mm = 240 };
 
 	(void)state;
 	assert_near(bh_profile_gauss_deg(&i, 60), 0.066683, 1e-6, "width at 60");
-	assert_near(bh_profile_line(&i, NULL, 1.5, 60).fwhm_deg, 0.066683, 1e-6, "no Lorentzian");
+	assert_near(bh_profile_line(&i, NULL, 1.5, 60).fwhm_deg, 0.066683, 1e-6,
+		    "no Lorentzian");
 	/* K 0.9, Cu Kα1, β 0.2° at 28.44° : 409.77 Å */
 	assert_ratio(bh_profile_line(&none, &small, 1.5405929, 28.44).fwhm_deg, 0.2, 1e-4,
 		     "Scherrer");
@@ -216,10 +229,14 @@ static void inverse(void **state)
 int main(void)
 {
 	static const struct CMUnitTest tests[] = {
-		cmocka_unit_test(footprint),	cmocka_unit_test(shifts),
-		cmocka_unit_test(lorentz_polarization), cmocka_unit_test(graphite),
-		cmocka_unit_test(depth),	cmocka_unit_test(pseudo_voigt),
-		cmocka_unit_test(widths),	cmocka_unit_test(spinner),
+		cmocka_unit_test(footprint),
+		cmocka_unit_test(shifts),
+		cmocka_unit_test(lorentz_polarization),
+		cmocka_unit_test(graphite),
+		cmocka_unit_test(depth),
+		cmocka_unit_test(pseudo_voigt),
+		cmocka_unit_test(widths),
+		cmocka_unit_test(spinner),
 		cmocka_unit_test(inverse),
 	};
 

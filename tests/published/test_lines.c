@@ -40,8 +40,10 @@ static void wavelengths(void **state)
 		assert_ratio(a->ka1_A, rows[i].ka1_A, 2e-7, rows[i].anode);
 		assert_ratio(a->ka2_A, rows[i].ka2_A, 2e-7, rows[i].anode);
 		assert_ratio(a->kb_A, rows[i].kb_A, 2e-7, rows[i].anode);
-		assert_near((2 * a->ka1_A + a->ka2_A) / 3, rows[i].mean_A, 1e-6, rows[i].anode);
-		assert_near(bh_energy_keV(a->ka1_A), rows[i].ka1_keV, 1e-5, rows[i].anode);
+		assert_near((2 * a->ka1_A + a->ka2_A) / 3, rows[i].mean_A, 1e-6,
+			    rows[i].anode);
+		assert_near(bh_energy_keV(a->ka1_A), rows[i].ka1_keV, 1e-5,
+			    rows[i].anode);
 	}
 	/* Deslattes et al.: 1.47631 Å; Bearden 1967: 1.47639 */
 	assert_near(bh_w_la1_A, 1.47631, 1.2e-4, "W La1");
@@ -55,8 +57,10 @@ static void profiles(void **state)
 		const char *anode;
 		double maximum_eV, fwhm_eV;
 	} rows[] = {
-		{ "Cr", 5414.81, 1.93 }, { "Fe", 6404.01, 2.62 },
-		{ "Co", 6930.38, 2.39 }, { "Cu", 8047.83, 2.41 },
+		{ "Cr", 5414.81, 1.93 },
+		{ "Fe", 6404.01, 2.62 },
+		{ "Co", 6930.38, 2.39 },
+		{ "Cu", 8047.83, 2.41 },
 	};
 
 	(void)state;
@@ -79,7 +83,7 @@ static void ratios(void **state)
 	} rows[] = {
 		{ "Cr", 0.5093, 0.1287, 0.480 }, { "Fe", 0.5106, 0.1344, 0.512 },
 		{ "Co", 0.5113, 0.1351, 0.519 }, { "Cu", 0.5132, 0.1338, 0.517 },
-		{ "Mo", 0.5244, 0.1935, 0 },     { "Ag", 0.5295, 0.2083, 0 },
+		{ "Mo", 0.5244, 0.1935, 0 },	 { "Ag", 0.5295, 0.2083, 0 },
 	};
 
 	(void)state;
@@ -90,8 +94,8 @@ static void ratios(void **state)
 		assert_near(ka2, rows[i].ka2, 0.02, rows[i].anode);
 		if (rows[i].measured_ka2 > 0)
 			assert_near(ka2, rows[i].measured_ka2, 0.03, rows[i].anode);
-		assert_near(bh_filter_kbeta_ratio(bh_anode_find(rows[i].anode)), rows[i].kb, 0.02,
-			    rows[i].anode);
+		assert_near(bh_filter_kbeta_ratio(bh_anode_find(rows[i].anode)),
+			    rows[i].kb, 0.02, rows[i].anode);
 	}
 }
 
@@ -131,8 +135,9 @@ static void foils(void **state)
 		const char *anode, *foil;
 		double mg_cm2, ka_passed;
 	} rows[] = {
-		{ "Cr", "V", 10, 0.49 },  { "Fe", "Mn", 12, 0.48 }, { "Co", "Fe", 14, 0.46 },
-		{ "Cu", "Ni", 18, 0.42 }, { "Mo", "Zr", 77, 0.29 },
+		{ "Cr", "V", 10, 0.49 },  { "Fe", "Mn", 12, 0.48 },
+		{ "Co", "Fe", 14, 0.46 }, { "Cu", "Ni", 18, 0.42 },
+		{ "Mo", "Zr", 77, 0.29 },
 	};
 
 	(void)state;
@@ -145,8 +150,8 @@ static void foils(void **state)
 		um = bh_filter_thickness_um(a, z, bh_filter_kbeta_ratio(a), 1.0 / 500);
 		mg_cm2 = um * BH_CM_PER_UM * bh_xray_density_g_cm3(z) * 1000;
 		assert_ratio(mg_cm2, rows[i].mg_cm2, 0.15, rows[i].foil);
-		assert_ratio(bh_absorb_layer_frac(z, um, bh_filter_ka_keV(a)), rows[i].ka_passed,
-			     0.15, rows[i].foil);
+		assert_ratio(bh_absorb_layer_frac(z, um, bh_filter_ka_keV(a)),
+			     rows[i].ka_passed, 0.15, rows[i].foil);
 	}
 	/* common practice: silver takes rhodium or palladium */
 	assert_true(bh_filter_element(bh_anode_find("Ag")) == 45 ||
@@ -192,7 +197,8 @@ static void attenuation(void **state)
 			bh_composition c;
 
 			assert_true(bh_formula_read(&c, arena, rows[i].formula, &err));
-			assert_ratio(bh_absorb_cm2_g(&c, bh_filter_ka_keV(bh_anode_find(anodes[k]))),
+			assert_ratio(bh_absorb_cm2_g(&c, bh_filter_ka_keV(bh_anode_find(
+								 anodes[k]))),
 				     rows[i].cm2_g[k], 0.003, rows[i].formula);
 		}
 	/* D. K. Smith 1992: quartz with Cu Kα μ = 91.3 1/cm; 4 % between
@@ -201,9 +207,10 @@ static void attenuation(void **state)
 		bh_composition quartz;
 
 		assert_true(bh_formula_read(&quartz, arena, "SiO2", &err));
-		assert_ratio(2.646 * bh_absorb_cm2_g(&quartz,
-						     bh_filter_ka_keV(bh_anode_find("Cu"))),
-			     91.3, 0.045, "quartz");
+		assert_ratio(
+			2.646 * bh_absorb_cm2_g(&quartz,
+						bh_filter_ka_keV(bh_anode_find("Cu"))),
+			91.3, 0.045, "quartz");
 	}
 	bh_arena_free(arena);
 }
@@ -215,12 +222,16 @@ static void path_and_sensor(void **state)
 {
 	static const struct {
 		double keV, cm2_g;
-	} air[] = { { 6, 23.41 }, { 8, 9.921 }, { 10, 5.120 }, { 15, 1.614 }, { 20, 0.7779 } };
+	} air[] = {
+		{ 6, 23.41 }, { 8, 9.921 }, { 10, 5.120 }, { 15, 1.614 }, { 20, 0.7779 }
+	};
 	static const struct {
 		const char *anode;
 		double stopped;
 	} rows[] = { { "Cu", 0.99 }, { "Mo", 0.39 }, { "Ag", 0.22 } };
-	static const bh_detector silicon = { .sensor_z = 14, .sensor_um = 320, .efficiency = 1 };
+	static const bh_detector silicon = { .sensor_z = 14,
+					     .sensor_um = 320,
+					     .efficiency = 1 };
 
 	(void)state;
 	for (size_t i = 0; i < sizeof air / sizeof *air; i++)
@@ -228,9 +239,10 @@ static void path_and_sensor(void **state)
 				     (1.205e-3 * 48),
 			     air[i].cm2_g, 0.02, "air");
 	for (size_t i = 0; i < sizeof rows / sizeof *rows; i++)
-		assert_near(bh_detector_efficiency_frac(
-				    &silicon, bh_filter_ka_keV(bh_anode_find(rows[i].anode))),
-			    rows[i].stopped, 0.0051, rows[i].anode);
+		assert_near(
+			bh_detector_efficiency_frac(
+				&silicon, bh_filter_ka_keV(bh_anode_find(rows[i].anode))),
+			rows[i].stopped, 0.0051, rows[i].anode);
 	assert_near(bh_absorb_gas_frac(BH_GAS_VACUUM, 480, 5), 1, 0, "vacuum");
 	assert_true(bh_absorb_gas_frac(BH_GAS_HELIUM, 480, 5.4) > 0.99);
 }
@@ -243,14 +255,22 @@ static void who_excites_whom(void **state)
 		bh_fl_group group;
 		bool by_ka, by_kb;
 	} rows[] = {
-		{ "Cu", "Fe", BH_FL_KA, true, true },   { "Cu", "Co", BH_FL_KA, true, true },
-		{ "Cu", "Ni", BH_FL_KA, false, true },  { "Cu", "Mn", BH_FL_KA, true, true },
-		{ "Cu", "Cu", BH_FL_KA, false, false }, { "Cu", "Dy", BH_FL_LA, true, true },
-		{ "Cu", "Ho", BH_FL_LA, false, true },  { "Cu", "Er", BH_FL_LA, false, true },
-		{ "Co", "Mn", BH_FL_KA, true, true },   { "Co", "Cr", BH_FL_KA, true, true },
-		{ "Co", "Fe", BH_FL_KA, false, true },  { "Fe", "Cr", BH_FL_KA, true, true },
-		{ "Fe", "Mn", BH_FL_KA, false, true },  { "Cr", "Ti", BH_FL_KA, true, true },
-		{ "Cr", "V", BH_FL_KA, false, true },   { "Mo", "Y", BH_FL_KA, true, true },
+		{ "Cu", "Fe", BH_FL_KA, true, true },
+		{ "Cu", "Co", BH_FL_KA, true, true },
+		{ "Cu", "Ni", BH_FL_KA, false, true },
+		{ "Cu", "Mn", BH_FL_KA, true, true },
+		{ "Cu", "Cu", BH_FL_KA, false, false },
+		{ "Cu", "Dy", BH_FL_LA, true, true },
+		{ "Cu", "Ho", BH_FL_LA, false, true },
+		{ "Cu", "Er", BH_FL_LA, false, true },
+		{ "Co", "Mn", BH_FL_KA, true, true },
+		{ "Co", "Cr", BH_FL_KA, true, true },
+		{ "Co", "Fe", BH_FL_KA, false, true },
+		{ "Fe", "Cr", BH_FL_KA, true, true },
+		{ "Fe", "Mn", BH_FL_KA, false, true },
+		{ "Cr", "Ti", BH_FL_KA, true, true },
+		{ "Cr", "V", BH_FL_KA, false, true },
+		{ "Mo", "Y", BH_FL_KA, true, true },
 		{ "Mo", "Zr", BH_FL_KA, false, true },
 	};
 
@@ -258,11 +278,14 @@ static void who_excites_whom(void **state)
 	for (size_t i = 0; i < sizeof rows / sizeof *rows; i++) {
 		const bh_anode *a = bh_anode_find(rows[i].anode);
 		int z = bh_xray_z(rows[i].element);
-		double ka = bh_xray_fluorescence_cm2_g(z, rows[i].group, bh_energy_keV(a->ka1_A));
-		double kb = bh_xray_fluorescence_cm2_g(z, rows[i].group, bh_energy_keV(a->kb_A));
+		double ka = bh_xray_fluorescence_cm2_g(z, rows[i].group,
+						       bh_energy_keV(a->ka1_A));
+		double kb = bh_xray_fluorescence_cm2_g(z, rows[i].group,
+						       bh_energy_keV(a->kb_A));
 
 		if ((ka > 0) != rows[i].by_ka || (kb > 0) != rows[i].by_kb)
-			fail_msg("%s on %s: Ka %g, Kb %g", rows[i].anode, rows[i].element, ka, kb);
+			fail_msg("%s on %s: Ka %g, Kb %g", rows[i].anode, rows[i].element,
+				 ka, kb);
 	}
 }
 
@@ -280,8 +303,8 @@ static void yields(void **state)
 
 	(void)state;
 	for (size_t i = 0; i < sizeof rows / sizeof *rows; i++)
-		assert_ratio(bh_xray_yield(bh_xray_z(rows[i].element), BH_SHELL_K), rows[i].yield,
-			     0.06, rows[i].element);
+		assert_ratio(bh_xray_yield(bh_xray_z(rows[i].element), BH_SHELL_K),
+			     rows[i].yield, 0.06, rows[i].element);
 }
 
 /* Kα output grows as (U − 1)^1.6 for U below about 4 (E. P. Bertin, Principles and Practice of

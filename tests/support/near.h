@@ -12,12 +12,12 @@
 #include <cmocka.h>
 
 /* |got − want| ≤ within, with both finite; `what` names the row. */
-#define assert_near(got, want, within, what)                                               \
+#define assert_near(got, want, within, what)                                             \
 	near_check((got), (want), (within), (what), __FILE__, __LINE__)
 /* |got/want − 1| ≤ within_frac. */
-#define assert_ratio(got, want, within_frac, what)                                         \
-	near_check((got), (want), fabs((double)(want)) * (within_frac), (what), __FILE__,  \
-		   __LINE__)
+#define assert_ratio(got, want, within_frac, what)                                       \
+	near_check((got), (want), fabs((double)(want)) * (within_frac), (what),          \
+		   __FILE__, __LINE__)
 
 static inline void near_check(double got, double want, double within, const char *what,
 			      const char *file, int line)

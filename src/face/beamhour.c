@@ -49,7 +49,8 @@ beamhour_plan *beamhour_plan_text(const char *name, const char *text, size_t len
 
 	*error_count = 0;
 	if (made && arena &&
-	    bh_request_read_text(&request, arena, name, text, length, &options, &problems) &&
+	    bh_request_read_text(&request, arena, name, text, length, &options,
+				 &problems) &&
 	    bh_plan_make(&made->plan, arena, request, &err)) {
 		made->arena = arena;
 		return made;
@@ -90,7 +91,8 @@ char *beamhour_render(const beamhour_plan *plan, const char *kind, size_t *lengt
 		good = bh_render_page(&bytes, &plan->plan, BH_PAGE_PNG, &err);
 	else
 		good = bh_fail(&err, BH_BAD_INPUT,
-			       "no such kind: %s\nallowed: text, json, pdf, svg, png", kind);
+			       "no such kind: %s\nallowed: text, json, pdf, svg, png",
+			       kind);
 	if (bytes.lost)
 		good = bh_fail_memory(&err);
 	if (!good) {
