@@ -24,16 +24,20 @@ typedef struct {
 
 const char *beamhour_version(void);
 
-/* Plan a request given as text.
- *   given    name         stands for the file in messages
- *            text, length UTF-8, syntax of a request file
- *            preset_dirs  folders with instrument files, searched in order
+/* A request and where its instrument may be found. */
+typedef struct {
+	const char *name; /* stands for the file in messages           */
+	const char *text; /* UTF-8, syntax of a request file           */
+	size_t length;
+	const char *const *preset_dirs; /* folders with instrument files */
+	size_t preset_dir_count;
+} beamhour_input;
+
+/* Plan a request.
  *   returns  a plan to free with beamhour_plan_free; NULL: errors[0 .. *error_count − 1]
  *            hold the first problems, as many as there is room for */
-beamhour_plan *beamhour_plan_text(const char *name, const char *text, size_t length,
-				  const char *const *preset_dirs, size_t preset_dir_count,
-				  beamhour_error *errors, size_t error_room,
-				  size_t *error_count);
+beamhour_plan *beamhour_plan_text(const beamhour_input *input, beamhour_error *errors,
+				  size_t error_room, size_t *error_count);
 
 /* 1 when an aim is not met or a severe finding stands, else 0. */
 int beamhour_plan_wants_attention(const beamhour_plan *plan);

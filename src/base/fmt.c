@@ -6,7 +6,8 @@
 
 static const char *none(char room[BH_FMT_ROOM])
 {
-	return strcpy(room, "\xE2\x80\x93"); /* en dash */
+	memcpy(room, "\xE2\x80\x93", 4); /* en dash */
+	return room;
 }
 
 /* A no-break thin space would be right on paper but has no width on some terminals: a plain
@@ -35,7 +36,7 @@ const char *bh_fmt_digits(char room[BH_FMT_ROOM], double value, int digits)
 	if (!isfinite(value))
 		return none(room);
 	if (!(size > 0))
-		return strcpy(room, "0");
+		return memcpy(room, "0", 2);
 	if (size < 1e-4 || size >= 1e7) {
 		snprintf(room, BH_FMT_ROOM, "%.*e", digits - 1, value);
 		return room;
@@ -84,7 +85,7 @@ const char *bh_fmt_duration(char room[BH_FMT_ROOM], double seconds)
 		return none(room);
 	if (seconds < 9.95) {
 		bh_fmt_digits(room, seconds, 2);
-		strcat(room, " s");
+		snprintf(room + strlen(room), 3, " s");
 		return room;
 	}
 	s = llround(seconds);

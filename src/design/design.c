@@ -41,9 +41,10 @@ static void grains_of(double grains[2], const work *w, size_t target)
 	for (int view = 0; view < 2; view++)
 		grains[view] = bh_grains_effective(
 			&w->plan->signal, w->scene,
-			&w->plan->phases[w->plan->targets[target].phase],
-			line->multiplicity, line->ka1_deg, (bh_view)view,
-			w->plan->request->specimen.spin);
+			&(bh_grain_line){
+				&w->plan->phases[w->plan->targets[target].phase],
+				line->multiplicity, line->ka1_deg, (bh_view)view,
+				w->plan->request->specimen.spin });
 }
 
 static void look_at_target(work *w, size_t index)

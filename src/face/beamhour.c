@@ -34,23 +34,21 @@ static void hand_over_one(beamhour_error *errors, size_t room, size_t *count,
 		hand_over(&errors[(*count)++], err);
 }
 
-beamhour_plan *beamhour_plan_text(const char *name, const char *text, size_t length,
-				  const char *const *preset_dirs, size_t preset_dir_count,
-				  beamhour_error *errors, size_t error_room,
-				  size_t *error_count)
+beamhour_plan *beamhour_plan_text(const beamhour_input *input, beamhour_error *errors,
+				  size_t error_room, size_t *error_count)
 {
 	beamhour_plan *made = calloc(1, sizeof *made);
 	bh_arena *arena = bh_arena_new();
 	bh_problems problems = { .arena = arena };
-	bh_read_options options = { .preset_dirs = preset_dirs,
-				    .preset_dir_count = preset_dir_count };
+	bh_read_options options = { .preset_dirs = input->preset_dirs,
+				    .preset_dir_count = input->preset_dir_count };
 	bh_err err = { BH_OK, 0, 0, "", "", "" };
 	bh_request *request;
 
 	*error_count = 0;
 	if (made && arena &&
-	    bh_request_read_text(&request, arena, name, text, length, &options,
-				 &problems) &&
+	    bh_request_read_text(&request, arena, input->name, input->text, input->length,
+				 &options, &problems) &&
 	    bh_plan_make(&made->plan, arena, request, &err)) {
 		made->arena = arena;
 		return made;

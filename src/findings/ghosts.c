@@ -35,7 +35,8 @@ static ghost measure(const bh_plan *plan, const bh_peak *peak)
 
 	if (!(density > 0))
 		return g;
-	bh_pattern(&all, &background, 1, peak->two_theta_deg, 1, &plan->signal);
+	bh_pattern(&all, &background, (bh_grid){ peak->two_theta_deg, 1, 1 },
+		   &plan->signal);
 	g.counts = density * peak->rate_cps_deg *
 		   bh_profile_inside_frac(profile, peak->fwhm_deg);
 	all -= peak->rate_cps_deg * bh_profile_height_inv_deg(profile, 0);

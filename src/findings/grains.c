@@ -30,13 +30,13 @@ static const char *remedy(bh_findings *findings, const bh_target_result *t, doub
 	const bh_specimen *specimen = &plan->request->specimen;
 	const bh_phase *phase = &plan->phases[t->phase];
 	/* the multiplicity falls out of the ratio */
-	double still = bh_grains_effective(&plan->signal, findings->scene, phase, 1,
-					   t->ka1_deg, BH_VIEW_STILL, false);
-	double spun = bh_grains_effective(&plan->signal, findings->scene, phase, 1,
-					  t->ka1_deg, BH_VIEW_STILL, true);
+	bh_grain_line line = { phase, 1, t->ka1_deg, BH_VIEW_STILL, false };
+	double still = bh_grains_effective(&plan->signal, findings->scene, &line), spun;
 	/* half the wanted error: the rest is left to counting */
 	double fine_um = specimen->grain_um * cbrt(t->grains * wanted * wanted / 4);
 
+	line.spin = true;
+	spun = bh_grains_effective(&plan->signal, findings->scene, &line);
 	*gain = specimen->spin || !(still > 0) ? 0 : spun / still;
 	if (*gain > 1.2)
 		return bh_say(findings,

@@ -8,45 +8,44 @@
 #include "physics/geometry.h"
 
 double bh_background_fluorescence_cps(const bh_composition *composition, size_t element,
-				      bh_fl_group group, double energy_keV, double flux_s,
-				      double solid_angle_sr)
+				      bh_fl_group group, bh_photons photons)
 {
 	const bh_element_share *e = &composition->elements[element];
-	double sigma_cm2_g = bh_xray_fluorescence_cm2_g(e->z, group, energy_keV);
+	double sigma_cm2_g = bh_xray_fluorescence_cm2_g(e->z, group, photons.energy_keV);
 	double out_keV = bh_xray_group_keV(e->z, group);
 
 	if (!(sigma_cm2_g > 0) || !(out_keV > 0))
 		return 0;
-	return flux_s * solid_angle_sr / (4 * BH_PI) * e->mass_frac * sigma_cm2_g /
-	       (bh_absorb_cm2_g(composition, energy_keV) +
+	return photons.flux_s * photons.solid_angle_sr / (4 * BH_PI) * e->mass_frac *
+	       sigma_cm2_g /
+	       (bh_absorb_cm2_g(composition, photons.energy_keV) +
 		bh_absorb_cm2_g(composition, out_keV));
 }
 
-double bh_background_compton_cps(const bh_composition *composition, double energy_keV,
-				 double flux_s, double solid_angle_sr,
+double bh_background_compton_cps(const bh_composition *composition, bh_photons photons,
 				 double two_theta_rad)
 {
-	double out_keV = bh_xray_compton_keV(energy_keV, two_theta_rad), dcs = 0;
+	double out_keV = bh_xray_compton_keV(photons.energy_keV, two_theta_rad), dcs = 0;
 
 	for (size_t i = 0; i < composition->count; i++)
 		dcs += composition->elements[i].mass_frac *
-		       bh_xray_compton_cm2_g_sr(composition->elements[i].z, energy_keV,
-						two_theta_rad);
-	return flux_s * solid_angle_sr * dcs /
-	       (bh_absorb_cm2_g(composition, energy_keV) +
+		       bh_xray_compton_cm2_g_sr(composition->elements[i].z,
+						photons.energy_keV, two_theta_rad);
+	return photons.flux_s * photons.solid_angle_sr * dcs /
+	       (bh_absorb_cm2_g(composition, photons.energy_keV) +
 		bh_absorb_cm2_g(composition, out_keV));
 }
 
-double bh_background_diffuse_cps(const bh_body *body, double energy_keV, double flux_s,
-				 double solid_angle_sr, double two_theta_rad,
-				 double polarization)
+double bh_background_diffuse_cps(const bh_body *body, bh_photons photons,
+				 double two_theta_rad, double polarization)
 {
-	double s = sin(two_theta_rad / 2) / bh_wavelength_A(energy_keV), dcs = 0;
+	double s = sin(two_theta_rad / 2) / bh_wavelength_A(photons.energy_keV), dcs = 0;
 
 	for (size_t i = 0; i < body->scatterer_count; i++) {
 		const bh_scatterer *a = &body->scatterers[i];
-		double f1 = bh_xray_f0(a->z, s) + bh_xray_f_prime(a->z, energy_keV);
-		double f2 = bh_xray_f_double_prime(a->z, energy_keV);
+		double f1 =
+			bh_xray_f0(a->z, s) + bh_xray_f_prime(a->z, photons.energy_keV);
+		double f2 = bh_xray_f_double_prime(a->z, photons.energy_keV);
 		double loss = a->amorphous ? 1 : -expm1(-2 * a->b_iso_A2 * s * s);
 
 		dcs += a->mass_frac * BH_AVOGADRO_PER_MOL / bh_xray_molar_mass_g(a->z) *
@@ -54,48 +53,63 @@ double bh_background_diffuse_cps(const bh_body *body, double energy_keV, double 
 	}
 	dcs *= BH_ELECTRON_RADIUS_CM * BH_ELECTRON_RADIUS_CM *
 	       bh_geometry_polarization(polarization, two_theta_rad / 2);
-	return flux_s * solid_angle_sr * dcs /
-	       (2 * bh_absorb_cm2_g(body->composition, energy_keV));
+	return photons.flux_s * photons.solid_angle_sr * dcs /
+	       (2 * bh_absorb_cm2_g(body->composition, photons.energy_keV));
+}
+
+/* One line group of one element of a body. */
+typedef struct {
+	const bh_body *body;
+	size_t element;
+	bh_fl_group group;
+	int z;
+	double out_keV, out_cm2_g; /* of its photons on their way out */
+	double counted_frac;
+} emitter;
+
+/* Rate, and μ/ρ in + out. */
+typedef struct {
+	double cps, path_cm2_g;
+} emission;
+
+static emission by_line(const emitter *e, bh_photons photons)
+{
+	return (emission){ e->counted_frac * bh_background_fluorescence_cps(
+						     e->body->composition, e->element,
+						     e->group, photons),
+			   bh_absorb_cm2_g(e->body->composition, photons.energy_keV) +
+				   e->out_cm2_g };
 }
 
 /* Sum over the continuum from the edge up, in bins that start at the edge: ≥ 60 energies
  * however near the edge lies to the tube voltage. */
-static double by_continuum_cps(double *path_cm2_g, const bh_body *body, size_t element,
-			       bh_fl_group group, const bh_continuum *continuum,
-			       double solid_angle_sr)
+static emission by_continuum(const emitter *e, const bh_continuum *c,
+			     double solid_angle_sr)
 {
 	enum { ENERGIES = 80 };
-	int z = body->composition->elements[element].z;
-	bh_shell shell =
-		group == BH_FL_KA || group == BH_FL_KB ? BH_SHELL_K : BH_SHELL_L3;
-	double top_keV =
-		continuum->low_keV + continuum->step_keV * (double)continuum->count;
-	double from_keV = bh_xray_edge_keV(z, shell), step_keV, sum = 0, path = 0;
-	double out_cm2_g =
-		bh_absorb_cm2_g(body->composition, bh_xray_group_keV(z, group));
+	bool k_shell = e->group == BH_FL_KA || e->group == BH_FL_KB;
+	double edge_keV = bh_xray_edge_keV(e->z, k_shell ? BH_SHELL_K : BH_SHELL_L3);
+	double top_keV = c->low_keV + c->step_keV * (double)c->count, step_keV;
+	double from_keV = fmax(edge_keV, c->low_keV);
+	emission sum = { 0, 0 };
 
-	*path_cm2_g = 0;
-
-	if (from_keV < continuum->low_keV)
-		from_keV = continuum->low_keV;
-	if (!(bh_xray_edge_keV(z, shell) > 0) || from_keV >= top_keV)
-		return 0;
+	if (!(edge_keV > 0) || from_keV >= top_keV)
+		return sum;
 	step_keV = (top_keV - from_keV) / ENERGIES;
 	for (int i = 0; i < ENERGIES; i++) {
 		double energy_keV = from_keV + (i + 0.5) * step_keV;
-		size_t bin = bh_continuum_bin(continuum, energy_keV);
-		double rate_cps;
+		size_t bin = bh_continuum_bin(c, energy_keV);
+		emission one;
 
-		if (bin >= continuum->count || !(continuum->flux_s_keV[bin] > 0))
+		if (bin >= c->count || !(c->flux_s_keV[bin] > 0))
 			continue;
-		rate_cps = bh_background_fluorescence_cps(
-			body->composition, element, group, energy_keV,
-			continuum->flux_s_keV[bin] * step_keV, solid_angle_sr);
-		sum += rate_cps;
-		path += rate_cps * (continuum->attenuation_cm2_g[bin] + out_cm2_g);
+		one = by_line(e, (bh_photons){ energy_keV, c->flux_s_keV[bin] * step_keV,
+					       solid_angle_sr });
+		sum.cps += one.cps;
+		sum.path_cm2_g += one.cps * one.path_cm2_g;
 	}
-	if (sum > 0)
-		*path_cm2_g = path / sum;
+	if (sum.cps > 0)
+		sum.path_cm2_g /= sum.cps;
 	return sum;
 }
 
@@ -104,19 +118,16 @@ typedef struct {
 	size_t count;
 } row_list;
 
-static void add_row(row_list *list, const bh_body *body, size_t element,
-		    bh_fl_group group, const char *by, double rate_cps, double path_cm2_g)
+static void add_row(row_list *list, const emitter *e, const char *by, emission one)
 {
-	int z = body->composition->elements[element].z;
-
-	if (rate_cps > 0)
+	if (one.cps > 0)
 		list->rows[list->count++] = (bh_fluorescence){
-			.z = z,
-			.line = bh_xray_group_name(group),
-			.energy_keV = bh_xray_group_keV(z, group),
+			.z = e->z,
+			.line = bh_xray_group_name(e->group),
+			.energy_keV = e->out_keV,
 			.excited_by = by,
-			.path_cm2_g = path_cm2_g,
-			.rate_cps = rate_cps,
+			.path_cm2_g = one.path_cm2_g,
+			.rate_cps = one.cps,
 		};
 }
 
@@ -134,62 +145,57 @@ static void drop_small(row_list *list)
 	list->count = kept;
 }
 
-typedef struct {
-	const bh_instrument *instrument;
-	const bh_setting *setting;
-	const bh_radiation *radiation;
-	const bh_continuum *continuum;
-	double omega_sr;
-} beam_terms;
-
 static void add_group(row_list *list, const bh_body *body, size_t element,
-		      bh_fl_group group, const beam_terms *b)
+		      bh_fl_group group, const bh_beam *beam)
 {
-	int z = body->composition->elements[element].z;
-	double out_keV = bh_xray_group_keV(z, group), counted, path_cm2_g, rate_cps;
+	emitter e = { .body = body, .element = element, .group = group };
+	double omega_sr = bh_detector_aperture_rad(beam->instrument) *
+			  bh_detector_axial_frac(beam->instrument);
 
-	if (!(out_keV > 0))
+	e.z = body->composition->elements[element].z;
+	e.out_keV = bh_xray_group_keV(e.z, group);
+	if (!(e.out_keV > 0))
 		return;
-	counted = bh_detector_counted_frac(b->instrument, b->setting, out_keV);
-	if (!(counted > 0))
+	e.out_cm2_g = bh_absorb_cm2_g(body->composition, e.out_keV);
+	e.counted_frac =
+		bh_detector_counted_frac(beam->instrument, beam->setting, e.out_keV);
+	if (!(e.counted_frac > 0))
 		return;
-	for (size_t k = 0; k < b->radiation->count; k++) {
-		const bh_line *line = &b->radiation->lines[k];
+	for (size_t k = 0; k < beam->radiation->count; k++) {
+		const bh_line *line = &beam->radiation->lines[k];
 
-		rate_cps = counted * bh_background_fluorescence_cps(
-					     body->composition, element, group,
-					     line->energy_keV, line->flux_s, b->omega_sr);
-		path_cm2_g = bh_absorb_cm2_g(body->composition, line->energy_keV) +
-			     bh_absorb_cm2_g(body->composition, out_keV);
-		add_row(list, body, element, group, line->name, rate_cps, path_cm2_g);
+		add_row(list, &e, line->name,
+			by_line(&e, (bh_photons){ line->energy_keV, line->flux_s,
+						  omega_sr }));
 	}
-	rate_cps = counted * by_continuum_cps(&path_cm2_g, body, element, group,
-					      b->continuum, b->omega_sr);
-	add_row(list, body, element, group, "continuum", rate_cps, path_cm2_g);
+	add_row(list, &e, "continuum", by_continuum(&e, beam->continuum, omega_sr));
 }
 
 bool bh_background_fluorescence(bh_fluorescence **rows, size_t *count, bh_arena *arena,
-				const bh_body *body, const bh_instrument *instrument,
-				const bh_setting *setting, const bh_radiation *radiation,
-				const bh_continuum *continuum, bh_err *err)
+				const bh_body *body, const bh_beam *beam, bh_err *err)
 {
-	beam_terms beam = { instrument, setting, radiation, continuum,
-			    bh_detector_aperture_rad(instrument) *
-				    bh_detector_axial_frac(instrument) };
-	row_list list = { NULL, 0 };
+	size_t most =
+		body->composition->count * BH_FL_GROUPS * (beam->radiation->count + 1);
+	row_list list = { bh_new(arena, bh_fluorescence, most), 0 };
 
-	list.rows =
-		bh_new(arena, bh_fluorescence,
-		       body->composition->count * BH_FL_GROUPS * (radiation->count + 1));
 	if (!list.rows)
 		return bh_fail_memory(err);
 	for (size_t i = 0; i < body->composition->count; i++)
 		for (bh_fl_group group = 0; group < BH_FL_GROUPS; group++)
-			add_group(&list, body, i, group, &beam);
+			add_group(&list, body, i, group, beam);
 	drop_small(&list);
 	*rows = list.rows;
 	*count = list.count;
 	return true;
+}
+
+/* kV · mA · opening: air scatter grows with it. */
+static double beam_strength(const bh_instrument *instrument, double kV, double mA,
+			    double divergence_deg)
+{
+	if (!(divergence_deg > 0))
+		divergence_deg = instrument->usual_divergence_deg;
+	return kV * mA * (divergence_deg > 0 ? divergence_deg : 1);
 }
 
 double bh_background_blank_cps(const bh_instrument *instrument, const bh_setting *setting,
@@ -197,26 +203,20 @@ double bh_background_blank_cps(const bh_instrument *instrument, const bh_setting
 {
 	const double *x = instrument->blank_two_theta_deg, *y = instrument->blank_cps;
 	size_t n = instrument->blank_count, i = 0;
-	/* air scatter grows with the beam: the blank was taken at the usual setting */
-	double usual =
-		setting->tube->kV * setting->tube->mA *
-		(instrument->usual_divergence_deg > 0 ? instrument->usual_divergence_deg
-						      : 1);
-	double now =
-		setting->kV * setting->mA *
-		(setting->divergence_deg > 0		? setting->divergence_deg
-		 : instrument->usual_divergence_deg > 0 ? instrument->usual_divergence_deg
-							: 1);
+	/* the blank was taken at the usual setting */
+	double scale = beam_strength(instrument, setting->kV, setting->mA,
+				     setting->divergence_deg) /
+		       beam_strength(instrument, setting->tube->kV, setting->tube->mA, 0);
 
 	if (n == 0)
 		return 0;
 	while (i < n && x[i] < two_theta_deg)
 		i++;
 	if (i == 0)
-		return y[0] * now / usual;
+		return y[0] * scale;
 	if (i == n)
-		return y[n - 1] * now / usual;
+		return y[n - 1] * scale;
 	return (y[i - 1] +
 		(y[i] - y[i - 1]) * (two_theta_deg - x[i - 1]) / (x[i] - x[i - 1])) *
-	       now / usual;
+	       scale;
 }

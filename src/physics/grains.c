@@ -41,13 +41,14 @@ static double lit_mm2(const bh_scene *scene, const bh_setting *setting,
 }
 
 double bh_grains_effective(const bh_signal *signal, const bh_scene *scene,
-			   const bh_phase *phase, int multiplicity, double two_theta_deg,
-			   bh_view view, bool spin)
+			   const bh_grain_line *line)
 {
-	double s = sin(bh_rad(two_theta_deg / 2)), diameter_mm, grain_mm3, solid_mm3, n;
+	const bh_phase *phase = line->phase;
+	double s = sin(bh_rad(line->two_theta_deg / 2)), diameter_mm, grain_mm3,
+	       solid_mm3, n;
 	double mu_inv_cm =
 		signal->radiation.lines[0].mass_attenuation_cm2_g * signal->density_g_cm3;
-	double along = bh_grains_spread_rad(scene, &signal->setting, view);
+	double along = bh_grains_spread_rad(scene, &signal->setting, line->view);
 	double across = signal->axial_frac / (2 * s);
 	double volume_frac, depth_mm;
 
@@ -62,8 +63,9 @@ double bh_grains_effective(const bh_signal *signal, const bh_scene *scene,
 	depth_mm = s / (2 * mu_inv_cm) / BH_CM_PER_MM;
 	depth_mm = fmin(depth_mm, scene->request->specimen.packing_frac *
 					  scene->request->specimen.thickness_mm);
-	solid_mm3 = lit_mm2(scene, &signal->setting, two_theta_deg) * depth_mm;
-	n = solid_mm3 * volume_frac / grain_mm3 * (multiplicity > 0 ? multiplicity : 1) *
-	    along * across / (4 * BH_PI);
-	return spin ? n * bh_grains_spin_gain(across, along) : n;
+	solid_mm3 = lit_mm2(scene, &signal->setting, line->two_theta_deg) * depth_mm;
+	n = solid_mm3 * volume_frac / grain_mm3 *
+	    (line->multiplicity > 0 ? line->multiplicity : 1) * along * across /
+	    (4 * BH_PI);
+	return line->spin ? n * bh_grains_spin_gain(across, along) : n;
 }

@@ -20,9 +20,11 @@ size_t bh_pattern_first(const bh_signal *signal, double two_theta_deg)
 	return low;
 }
 
-void bh_pattern(double *cps, double *background_cps, size_t count, double from_deg,
-		double step_deg, const bh_signal *signal)
+void bh_pattern(double *cps, double *background_cps, bh_grid grid,
+		const bh_signal *signal)
 {
+	double from_deg = grid.from_deg, step_deg = grid.step_deg;
+	size_t count = grid.count;
 	/* a Lorentzian has 1 % of its area beyond 30 FWHM: what is cut is below the noise */
 	static const double reach_fwhm = 30;
 

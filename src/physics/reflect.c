@@ -94,8 +94,10 @@ static bool fill_f2(bh_reflection *list, size_t count, bh_arena *arena,
 		d_A[i] = list[i].d_A;
 		memcpy(h[i], list[i].h, sizeof *h);
 	}
-	if (!bh_structure_f2_table(f2, arena, phase, (const int(*)[3])h, d_A, count,
-				   energy_keV, radiation->count, (bh_without){ false },
+	if (!bh_structure_f2_table(f2, arena, phase,
+				   &(bh_f2_query){ (const int(*)[3])h, d_A, count,
+						   energy_keV, radiation->count,
+						   (bh_without){ false } },
 				   err))
 		return false;
 	if (!bh_cell_reciprocal(&reciprocal, &phase->cell))

@@ -406,22 +406,21 @@ static void plane_f2(double *f2, const wave sums[BH_Z_MAX + 1], const dispersion
 }
 
 bool bh_structure_f2_table(double *f2, bh_arena *arena, const bh_phase *phase,
-			   const int (*h)[3], const double *d_A, size_t planes,
-			   const double *energy_keV, size_t energies, bh_without without,
-			   bh_err *err)
+			   const bh_f2_query *query, bh_err *err)
 {
 	atoms_list list = { .phase = phase };
 	wave sums[BH_Z_MAX + 1];
 	dispersion d;
 
-	if (!expand(&list, arena, phase, h, planes) ||
-	    !disperse(&d, arena, phase, energy_keV, energies, without))
+	if (!expand(&list, arena, phase, query->h, query->planes) ||
+	    !disperse(&d, arena, phase, query->energy_keV, query->energies,
+		      query->without))
 		return bh_fail_memory(err);
-	for (size_t i = 0; i < planes; i++) {
-		double s_inv_A = 1 / (2 * d_A[i]);
+	for (size_t i = 0; i < query->planes; i++) {
+		double s_inv_A = 1 / (2 * query->d_A[i]);
 
-		element_sums(sums, &list, h[i], s_inv_A);
-		plane_f2(f2 + i * energies, sums, &d, s_inv_A, energies);
+		element_sums(sums, &list, query->h[i], s_inv_A);
+		plane_f2(f2 + i * query->energies, sums, &d, s_inv_A, query->energies);
 	}
 	return true;
 }
@@ -433,10 +432,10 @@ double bh_structure_f2(const bh_phase *phase, const int h[3], double d_A,
 	bh_err err = { BH_OK, 0, 0, "", "", "" };
 	double f2 = 0;
 	int plane[1][3] = { { h[0], h[1], h[2] } };
+	bh_f2_query query = { (const int(*)[3])plane, &d_A, 1, &energy_keV, 1, without };
 
 	if (arena)
-		bh_structure_f2_table(&f2, arena, phase, (const int(*)[3])plane, &d_A, 1,
-				      &energy_keV, 1, without, &err);
+		bh_structure_f2_table(&f2, arena, phase, &query, &err);
 	bh_arena_free(arena);
 	return f2;
 }

@@ -35,12 +35,20 @@ bool bh_structure_clash(const bh_phase *phase, double within_A, size_t *i, size_
 double bh_structure_f2(const bh_phase *phase, const int h[3], double d_A,
 		       double energy_keV, bh_without without);
 
-/* The same for many planes and photon energies at once; f2[i·energies + k]. Atoms of the
- * cell are expanded once.
+/* Many planes at many photon energies. */
+typedef struct {
+	const int (*h)[3];
+	const double *d_A; /* as many as planes */
+	size_t planes;
+	const double *energy_keV;
+	size_t energies;
+	bh_without without;
+} bh_f2_query;
+
+/* |F|² of each plane at each energy: f2[plane · energies + energy]. Atoms of the cell are
+ * expanded once.
  *   false  memory is out */
 bool bh_structure_f2_table(double *f2, bh_arena *arena, const bh_phase *phase,
-			   const int (*h)[3], const double *d_A, size_t planes,
-			   const double *energy_keV, size_t energies, bh_without without,
-			   bh_err *err);
+			   const bh_f2_query *query, bh_err *err);
 
 #endif

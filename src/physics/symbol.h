@@ -18,15 +18,15 @@ typedef struct {
 	const char *full;	   /* the full Hermann-Mauguin symbol                 */
 } bh_symbol_row;
 
-/* What a user wrote, taken apart. */
+/* What a user wrote, taken apart: with single blanks and without any, underscores and
+ * brackets left out; the whole text in small letters, as a Hall symbol; what stands behind
+ * ":", "" for nothing; the number that it is, 0 for none. */
 typedef struct {
-	char spaced[BH_SYMBOL_LENGTH +
-		    1]; /* one blank between the parts, no underscore */
-	char squeezed[BH_SYMBOL_LENGTH +
-		      1];		 /* no blank at all                            */
-	char hall[BH_SYMBOL_LENGTH + 1]; /* the whole text, small letters              */
-	char choice[8];			 /* what stands behind ":"; "" none            */
-	int number;			 /* 0: it is no number                         */
+	char spaced[BH_SYMBOL_LENGTH + 1];
+	char squeezed[BH_SYMBOL_LENGTH + 1];
+	char hall[BH_SYMBOL_LENGTH + 1];
+	char choice[8];
+	int number;
 } bh_symbol;
 
 /* Take a text apart. "P 2(1)/c" is "P 21/c"; a last letter H or R is a choice of axes, S or
@@ -35,9 +35,10 @@ typedef struct {
 bool bh_symbol_read(bh_symbol *symbol, const char *text);
 
 /* How well a setting fits a symbol; 0: not at all. In falling order: number; Hermann-Mauguin
- * with its blanks; Hall; Hermann-Mauguin without blanks; what is left: an older spelling (cubic groups
- * without the bar, "F d 3 m"; other letters for the glide e). The choice is not looked at.
- *   from  International Tables A (2016), 1.4, and for e P. M. de Wolff et al., Acta Cryst. A48
+ * with its blanks; Hall; Hermann-Mauguin without blanks; what is left: an older spelling (cubic
+ * groups without the bar, "F d 3 m"; other letters for the glide e), Hall without blanks. The
+ * choice is not looked at.
+ *   from  International Tables A (2016), 1.4; for e P. M. de Wolff et al., Acta Cryst. A48
  *         (1992) 727 */
 int bh_symbol_fit(const bh_symbol *symbol, const bh_symbol_row *row);
 

@@ -62,13 +62,28 @@ static int find_row(const bh_symbol *symbol, bool *but_for_choice)
 	return found;
 }
 
+/* The Hall symbol of a centred cell: "-P 1" with C is "-C 1". */
+static void centred_hall(char *hall, size_t room, int i)
+{
+	char *lattice;
+
+	snprintf(hall, room, "%s", spg_get_spacegroup_type(centred[i].row).hall_symbol);
+	lattice = strchr(hall, 'P');
+	if (lattice)
+		*lattice = centred[i].name[0];
+}
+
 static int find_centred(const bh_symbol *symbol)
 {
 	for (int i = 0; i < CENTRED && symbol->choice[0] == '\0'; i++) {
-		bh_symbol other;
+		char hall[BH_SYMBOL_ROOM];
+		bh_symbol_row row = { .international = centred[i].name,
+				      .full = centred[i].name,
+				      .choice = "",
+				      .hall = hall };
 
-		if (bh_symbol_read(&other, centred[i].name) &&
-		    strcmp(other.squeezed, symbol->squeezed) == 0)
+		centred_hall(hall, sizeof hall, i);
+		if (bh_symbol_fit(symbol, &row) > 0)
 			return i;
 	}
 	return CENTRED;
@@ -220,7 +235,6 @@ static size_t lattice_points(double points[3][3], char letter)
 static bool make_centred(bh_space_group *group, bh_arena *arena, int i, bh_err *err)
 {
 	double points[3][3];
-	char *lattice;
 	size_t more = lattice_points(points, centred[i].name[0]), n;
 
 	if (!bh_symmetry_row(group, arena, centred[i].row, err))
@@ -242,9 +256,7 @@ static bool make_centred(bh_space_group *group, bh_arena *arena, int i, bh_err *
 	group->hall_number = 0;
 	group->choice[0] = '\0';
 	snprintf(group->symbol, sizeof group->symbol, "%s", centred[i].name);
-	lattice = strchr(group->hall, 'P');
-	if (lattice)
-		*lattice = centred[i].name[0];
+	centred_hall(group->hall, sizeof group->hall, i);
 	return true;
 }
 

@@ -104,8 +104,10 @@ static bool draw(bh_plan *plan, bh_err *err)
 	plan->pattern_background_cps = bh_new(plan->arena, double, plan->pattern_count);
 	if (!plan->pattern_cps || !plan->pattern_background_cps)
 		return bh_fail_memory(err);
-	bh_pattern(plan->pattern_cps, plan->pattern_background_cps, plan->pattern_count,
-		   plan->pattern_from_deg, plan->pattern_step_deg, &plan->signal);
+	bh_pattern(plan->pattern_cps, plan->pattern_background_cps,
+		   (bh_grid){ plan->pattern_from_deg, plan->pattern_step_deg,
+			      plan->pattern_count },
+		   &plan->signal);
 	return true;
 }
 

@@ -33,7 +33,8 @@ static void footer(const paper *p)
 	snprintf(text, sizeof text, "beamhour %s · %.120s · %.120s", BH_VERSION,
 		 p->sheet->title, p->plan->request->file);
 	snprintf(number, sizeof number, "page %zu of %zu", p->page, p->pages);
-	bh_pen_line(p->pen, left, 806, right, 806, (bh_stroke){ 0.4, 0.6, false });
+	bh_pen_line(p->pen, (bh_segment){ left, 806, right, 806 },
+		    (bh_stroke){ 0.4, 0.6, false });
 	line.text = text;
 	bh_pen_words(p->pen, line, left, 809, right - left - 70);
 	line.text = number;
@@ -123,7 +124,8 @@ static void heading(paper *p, const char *text, double keep)
 {
 	p->y += 7;
 	need(p, 18 + keep);
-	bh_pen_line(p->pen, left, p->y, right, p->y, (bh_stroke){ 0.7, 0, false });
+	bh_pen_line(p->pen, (bh_segment){ left, p->y, right, p->y },
+		    (bh_stroke){ 0.7, 0, false });
 	p->y += 3;
 	p->y += 3 + bh_pen_words(p->pen, words(text, head_size, true), left, p->y,
 				 right - left);
@@ -228,7 +230,8 @@ static void table_head(paper *p, const columns *c, const bh_table *t)
 		      (bh_words){ "", small_size, false, BH_AT_LEFT, 0.35 });
 		p->y += cells_height(p, c, t, units, false) - 1;
 	}
-	bh_pen_line(p->pen, left, p->y, right, p->y, (bh_stroke){ 0.4, 0.4, false });
+	bh_pen_line(p->pen, (bh_segment){ left, p->y, right, p->y },
+		    (bh_stroke){ 0.4, 0.4, false });
 	p->y += 2;
 }
 

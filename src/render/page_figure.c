@@ -103,13 +103,15 @@ static void axes(const figure *f)
 	double base = f->plot.y + f->plot.height;
 	bh_stroke thin = { 0.6, 0, false };
 
-	bh_pen_line(f->pen, f->plot.x, base, f->plot.x + f->plot.width, base, thin);
+	bh_pen_line(f->pen,
+		    (bh_segment){ f->plot.x, base, f->plot.x + f->plot.width, base },
+		    thin);
 	for (double at = ceil(plan->pattern_from_deg / step - 1e-9) * step;
 	     at <= plan->pattern_to_deg + 1e-9; at += step) {
 		char room[BH_FMT_ROOM];
 		double x = x_of(f, at);
 
-		bh_pen_line(f->pen, x, base, x, base + 4, thin);
+		bh_pen_line(f->pen, (bh_segment){ x, base, x, base + 4 }, thin);
 		bh_pen_words(f->pen,
 			     (bh_words){ bh_fmt_short(room, at, 4), 7, false,
 					 BH_AT_CENTRE, 0 },
@@ -128,7 +130,7 @@ static void counts_axis(const figure *f)
 		double y = f->plot.y + f->plot.height * (1 - shares[i]);
 		char room[BH_FMT_ROOM];
 
-		bh_pen_line(f->pen, f->plot.x - 3, y, f->plot.x, y,
+		bh_pen_line(f->pen, (bh_segment){ f->plot.x - 3, y, f->plot.x, y },
 			    (bh_stroke){ 0.6, 0, false });
 		bh_pen_words(f->pen,
 			     (bh_words){ bh_fmt_digits(room, root * root, 2), 7, false,

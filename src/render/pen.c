@@ -170,11 +170,10 @@ static void stroke_path(bh_pen *pen, bh_stroke stroke)
 	cairo_stroke(pen->cairo);
 }
 
-void bh_pen_line(bh_pen *pen, double x1, double y1, double x2, double y2,
-		 bh_stroke stroke)
+void bh_pen_line(bh_pen *pen, bh_segment segment, bh_stroke stroke)
 {
-	cairo_move_to(pen->cairo, x1, y1);
-	cairo_line_to(pen->cairo, x2, y2);
+	cairo_move_to(pen->cairo, segment.x1, segment.y1);
+	cairo_line_to(pen->cairo, segment.x2, segment.y2);
 	stroke_path(pen, stroke);
 }
 
@@ -205,20 +204,6 @@ void bh_pen_curve(bh_pen *pen, const double *x, const double *y, size_t count,
 	cairo_new_path(pen->cairo);
 	trace(pen, x, y, count);
 	stroke_path(pen, stroke);
-}
-
-void bh_pen_area(bh_pen *pen, const double *x, const double *y, size_t count,
-		 double base_y, double grey)
-{
-	if (count == 0)
-		return;
-	cairo_new_path(pen->cairo);
-	cairo_move_to(pen->cairo, x[0], base_y);
-	trace(pen, x, y, count);
-	cairo_line_to(pen->cairo, x[count - 1], base_y);
-	cairo_close_path(pen->cairo);
-	cairo_set_source_rgb(pen->cairo, grey, grey, grey);
-	cairo_fill(pen->cairo);
 }
 
 void bh_pen_marker(bh_pen *pen, double x, double y, double size)

@@ -44,15 +44,15 @@ typedef struct {
 	bool dashed;
 } bh_stroke;
 
-void bh_pen_line(bh_pen *pen, double x1, double y1, double x2, double y2,
-		 bh_stroke stroke);
+typedef struct {
+	double x1, y1, x2, y2;
+} bh_segment;
+
+void bh_pen_line(bh_pen *pen, bh_segment segment, bh_stroke stroke);
 void bh_pen_fill(bh_pen *pen, bh_box box, double grey);
 void bh_pen_frame(bh_pen *pen, bh_box box, bh_stroke stroke);
 void bh_pen_curve(bh_pen *pen, const double *x, const double *y, size_t count,
 		  bh_stroke stroke);
-/* The area between a curve and a base line. */
-void bh_pen_area(bh_pen *pen, const double *x, const double *y, size_t count,
-		 double base_y, double grey);
 /* A small triangle whose point is at x, y, pointing down. */
 void bh_pen_marker(bh_pen *pen, double x, double y, double size);
 

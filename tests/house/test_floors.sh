@@ -15,6 +15,7 @@ while read -r floor allowed; do
 			while IFS=: read -r file line include; do
 				from=${include#*\"}
 				from=${from%%/*}
+				[ "$from" = 'beamhour.h"' ] && from=public
 				case " $floor $allowed " in
 				*" $from "*) ;;
 				*) echo "$file:$line: $include" ;;

@@ -68,6 +68,7 @@ static void found(void **state)
 		{ "P b a n:2", 50, "P b a n:2", 8, false },
 		{ "C -1", 2, "C -1", 4, false },
 		{ "I-1", 2, "I -1", 4, false },
+		{ "-C 1", 2, "C -1", 4, false },
 		{ "F 4/m m m", 139, "F 4/m m m", 64, false },
 	};
 

@@ -3,14 +3,13 @@
 crystallographic libraries that share no tables: gemmi and cctbx (Debian: python3-gemmi,
 python3-cctbx). They must agree with each other on everything that is written.
 
-    tests/published/make_space_groups.py ROWS
+    tests/published/make_space_groups.py
 
-ROWS: a list "row, tab, Hall symbol" of the 530 settings in the order of International Tables A
-(the numbering of the database that the program uses). Only the numbering is taken from it: the
-operations are built by each library from the Hall symbol (S. R. Hall, Acta Cryst. A37 (1981)
-517; International Tables B, 1.4).
+Rows and Hall symbols of the 530 settings are read from space_groups.tsv itself (the numbering of
+the database that the program uses). Only the numbering is taken from there: the operations are
+built by each library from the Hall symbol (S. R. Hall, Acta Cryst. A37 (1981) 517; International
+Tables B, 1.4).
 """
-import sys
 from pathlib import Path
 
 import gemmi
@@ -106,8 +105,8 @@ def write_symbols(rows, chosen):
 
 
 def main():
-    rows = [line.rstrip("\n").split("\t") for line in open(sys.argv[1])]
-    rows = [(int(row), hall) for row, hall in rows]
+    fields = [line.split("\t") for line in (FOLDER / "space_groups.tsv").read_text().splitlines()]
+    rows = [(int(f[0]), f[4]) for f in fields if len(f) == 6]
     write_groups(rows, planes())
     write_symbols(rows, planes())
 

@@ -298,8 +298,9 @@ static void fluorescence(void **state)
 		assert_ratio(bh_xray_fluorescence_cm2_g(FE, rows[i].group, keV),
 			     rows[i].sigma_cm2_g, 1e-6, "sigma");
 		cps = efficiency * bh_background_fluorescence_cps(
-					   mix, 1, rows[i].group, keV, rows[i].flux_s,
-					   aperture_rad * axial_frac);
+					   mix, 1, rows[i].group,
+					   (bh_photons){ keV, rows[i].flux_s,
+							 aperture_rad * axial_frac });
 		assert_ratio(cps, rows[i].cps, 1e-5, "fluorescence");
 		assert_ratio(cps * rows[i].pass, rows[i].passed_cps, 1e-5, "with pass");
 		total += cps * rows[i].pass;
@@ -319,7 +320,8 @@ static void scattering(void **state)
 		{ true, 90, 0.0161897, 0.0146136 },
 	};
 	const crystals *c = *state;
-	double keV = bh_energy_keV(1.5405929), omega = aperture_rad * axial_frac;
+	double keV = bh_energy_keV(1.5405929);
+	bh_photons photons = { keV, flux_s, aperture_rad * axial_frac };
 
 	for (size_t i = 0; i < sizeof rows / sizeof *rows; i++) {
 		const bh_phase *p = rows[i].hematite ? &c->hematite : &c->corundum;
@@ -334,9 +336,7 @@ static void scattering(void **state)
 				       0.3, false };
 		/* the worked number takes μ/ρ of the incident energy both ways in and out */
 		assert_ratio(
-			efficiency *
-				bh_background_compton_cps(mix, keV, flux_s, omega,
-							  theta2) *
+			efficiency * bh_background_compton_cps(mix, photons, theta2) *
 				(bh_absorb_cm2_g(mix, keV) +
 				 bh_absorb_cm2_g(mix, bh_xray_compton_keV(keV, theta2))) /
 				(2 * bh_absorb_cm2_g(mix, keV)),
@@ -344,8 +344,8 @@ static void scattering(void **state)
 		assert_ratio(bh_xray_compton_keV(keV, theta2),
 			     keV / (1 + (1 - cos(theta2)) * keV / 511.0), 1e-6,
 			     "Compton energy");
-		assert_ratio(efficiency * bh_background_diffuse_cps(&body, keV, flux_s,
-								    omega, theta2, 1),
+		assert_ratio(efficiency *
+				     bh_background_diffuse_cps(&body, photons, theta2, 1),
 			     rows[i].diffuse_cps, 2e-5, "diffuse");
 	}
 }
