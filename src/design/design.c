@@ -60,7 +60,7 @@ static void look_at_target(work *w, size_t index)
 		t->reflection = SIZE_MAX;
 		return;
 	}
-	bh_view_make(line, signal, w->scene, t->reflection);
+	bh_view_make(line, signal, t->reflection);
 	grains_of(grains, w, index);
 	t->rate_known = signal->reflections[t->reflection].rate_known;
 	t->ka1_deg = line->ka1_deg;
@@ -166,7 +166,7 @@ static bool find_needs(work *w)
 		    plan->targets[need->target].reflection == SIZE_MAX)
 			continue;
 		grains_of(grains, w, need->target);
-		bh_need_line(need, &w->lines[need->target], grains, plan->instrument);
+		bh_need_line(need, &w->lines[need->target], grains);
 	}
 	return true;
 }

@@ -54,10 +54,8 @@ static void need_of(bh_need *need, const bh_view_of_line *line, const double gra
 		need->density_s_deg[view] = density;
 }
 
-void bh_need_line(bh_need *need, const bh_view_of_line *line, const double grains[2],
-		  const bh_instrument *instrument)
+void bh_need_line(bh_need *need, const bh_view_of_line *line, const double grains[2])
 {
-	(void)instrument;
 	need->computed = line->area_cps_deg > 0;
 	for (int view = 0; view < 2; view++) {
 		need->reachable[view] = true;

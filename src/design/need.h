@@ -28,8 +28,7 @@ double bh_need_floor_variance(const bh_view_of_line *line, double grains,
  *   The counting part of the variance is what the wanted one leaves above the floor, and
  *   never asked below a ninth of the floor: an aim nearer to its floor than that is not
  *   reachable by counting, and the exposure stops there. */
-void bh_need_line(bh_need *need, const bh_view_of_line *line, const double grains[2],
-		  const bh_instrument *instrument);
+void bh_need_line(bh_need *need, const bh_view_of_line *line, const double grains[2]);
 
 /* Error of a line aim at an exposure density: area (fraction) or position (degrees). */
 double bh_need_line_error(const bh_view_of_line *line, double grains,

@@ -251,10 +251,8 @@ static void inform(bh_view_of_line *view, const bh_signal *signal)
 			view->information[a * n + b] = view->information[b * n + a];
 }
 
-void bh_view_make(bh_view_of_line *view, const bh_signal *signal, const bh_scene *scene,
-		  size_t reflection)
+void bh_view_make(bh_view_of_line *view, const bh_signal *signal, size_t reflection)
 {
-	(void)scene;
 	*view = (bh_view_of_line){ .reflection = reflection };
 	place(view, signal);
 	view->background_cps = bh_observe_background_cps(signal, view->ka1_deg);

@@ -50,8 +50,7 @@ size_t bh_view_find(const bh_signal *signal, const bh_phase *phase, size_t phase
 
 /* Look at a target. Its rate may be 0 or unknown: then only the angles are filled.
  *   given    reflection  in range, from bh_view_find */
-void bh_view_make(bh_view_of_line *view, const bh_signal *signal, const bh_scene *scene,
-		  size_t reflection);
+void bh_view_make(bh_view_of_line *view, const bh_signal *signal, size_t reflection);
 
 typedef enum { BH_FIT_AREA, BH_FIT_POSITION } bh_fit_parameter;
 

@@ -53,7 +53,7 @@ static double cost_of(const bh_findings *findings, const bh_target_result *t,
 	bh_view_of_line line;
 	double with, without, background_deg;
 
-	bh_view_make(&line, &findings->plan->signal, findings->scene, t->reflection);
+	bh_view_make(&line, &findings->plan->signal, t->reflection);
 	with = bh_view_net_variance(&background_deg, &line);
 	take_cps = fmin(take_cps, line.background_cps);
 	line.background_cps -= take_cps;

@@ -47,7 +47,7 @@ static bool better_plane(bh_findings *findings, const bh_target_result *t, doubl
 
 		if (r->phase != t->phase || i == t->reflection || r->relative < 5)
 			continue;
-		bh_view_make(&line, signal, findings->scene, i);
+		bh_view_make(&line, signal, i);
 		other = bh_view_density(&line, 0.03 * 0.03, BH_FIT_AREA);
 		if (!(other < best) || !(bh_view_limit(&line, BH_FIT_AREA) < 1e-4))
 			continue;
@@ -186,7 +186,7 @@ bool bh_find_overlap(bh_findings *findings)
 
 		if (t->reflection == SIZE_MAX || !t->rate_known || !(t->rate_cps_deg > 0))
 			continue;
-		bh_view_make(&line, &plan->signal, findings->scene, t->reflection);
+		bh_view_make(&line, &plan->signal, t->reflection);
 		for (size_t k = 0; k < line.neighbour_count; k++)
 			if (!worst ||
 			    line.neighbours[k].in_window_frac > worst->in_window_frac)

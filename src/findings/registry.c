@@ -107,7 +107,7 @@ double bh_findings_cost(const bh_signal *signal, const bh_scene *scene,
 
 	if (reflection == SIZE_MAX || !signal->reflections[reflection].in_range)
 		return HUGE_VAL;
-	bh_view_make(&line, signal, scene, reflection);
+	bh_view_make(&line, signal, reflection);
 	return bh_view_density(&line, 0.03 * 0.03, BH_FIT_AREA);
 }
 

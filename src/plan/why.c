@@ -109,8 +109,7 @@ static bool target(bh_plan *plan, const bh_scene *scene, const bh_target_result 
 		   err);
 }
 
-static bool error_of(bh_plan *plan, const bh_scene *scene, const bh_target_result *t,
-		     bh_err *err)
+static bool error_of(bh_plan *plan, const bh_target_result *t, bh_err *err)
 {
 	const bh_phase *phase = &plan->phases[t->phase];
 	double background_deg, net;
@@ -118,7 +117,7 @@ static bool error_of(bh_plan *plan, const bh_scene *scene, const bh_target_resul
 
 	if (!(t->predicted_error_frac > 0))
 		return true;
-	bh_view_make(&v, &plan->signal, scene, t->reflection);
+	bh_view_make(&v, &plan->signal, t->reflection);
 	net = bh_view_net_variance(&background_deg, &v);
 	return add(plan,
 		   (bh_why){ say(plan, "area error of %s %s", phase->name,
@@ -150,7 +149,7 @@ bool bh_words_why(bh_plan *plan, const bh_scene *scene, bh_err *err)
 		const bh_target_result *t = &plan->targets[i];
 
 		if (t->reflection != SIZE_MAX &&
-		    (!target(plan, scene, t, err) || !error_of(plan, scene, t, err)))
+		    (!target(plan, scene, t, err) || !error_of(plan, t, err)))
 			return false;
 	}
 	return true;
