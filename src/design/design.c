@@ -547,22 +547,6 @@ static void constant_scan(work *w)
 	plan->times.constant_scan_s = bh_ranges_scanning_s(&range, plan->instrument);
 }
 
-static bool unsure(bh_plan *plan, bh_err *err)
-{
-	double factor = plan->signal.setting.tube->throughput_factor;
-
-	plan->unsure = bh_new(plan->arena, bh_unsure, 1);
-	if (!plan->unsure)
-		return bh_fail_memory(err);
-	if (factor > 1)
-		plan->unsure[plan->unsure_count++] = (bh_unsure){
-			"throughput (not measured on this machine)", factor,
-			plan->times.overhead_s + plan->times.scanning_s / factor,
-			plan->times.overhead_s + plan->times.scanning_s * factor
-		};
-	return true;
-}
-
 bool bh_design(bh_plan *plan, const bh_scene *scene, bh_err *err)
 {
 	work w = { .plan = plan,
@@ -580,5 +564,5 @@ bool bh_design(bh_plan *plan, const bh_scene *scene, bh_err *err)
 	    !fit_booking(&w) || !results(&w))
 		return false;
 	constant_scan(&w);
-	return unsure(plan, err);
+	return true;
 }

@@ -12,7 +12,6 @@ enum { AREA, POSITION, LEVEL, SLOPE, OWN_PARAMETERS };
 enum { POINTS = 240 };
 
 static const double half_window_fwhm = 1.5;
-static const double neighbour_prior_var = 0.25; /* area known to 50 %: share factor 1.5 */
 static const double neighbour_least = 1e-3; /* of the target's area, to be looked at */
 static const double many_counts = 1e10;	    /* as good as endless counting */
 
@@ -253,7 +252,11 @@ static void inform(bh_view_of_line *view, const bh_signal *signal)
 
 void bh_view_make(bh_view_of_line *view, const bh_signal *signal, size_t reflection)
 {
-	*view = (bh_view_of_line){ .reflection = reflection };
+	*view = (bh_view_of_line){
+		.reflection = reflection,
+		.neighbour_prior_var =
+			signal->neighbour_prior_frac * signal->neighbour_prior_frac,
+	};
 	place(view, signal);
 	view->background_cps = bh_observe_background_cps(signal, view->ka1_deg);
 	if (!signal->reflections[reflection].rate_known)
@@ -294,7 +297,7 @@ double bh_view_variance(const bh_view_of_line *view, double density_s_deg,
 		for (size_t b = 0; b < n; b++)
 			m[a * n + b] = density_s_deg * view->information[a * all + b];
 	for (size_t a = OWN_PARAMETERS; a < n; a++)
-		m[a * n + a] += 1 / neighbour_prior_var;
+		m[a * n + a] += 1 / view->neighbour_prior_var;
 	return bh_cholesky_inverse_kk(&variance, m, n,
 				      parameter == BH_FIT_AREA ? AREA : POSITION)
 		       ? variance

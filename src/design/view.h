@@ -38,7 +38,8 @@ typedef struct {
 	size_t equal_planes; /* planes of the same phase at the same d         */
 	int multiplicity;    /* of all of them, Friedel opposites counted      */
 	bh_neighbour neighbours[BH_VIEW_NEIGHBOURS];
-	size_t neighbour_count; /* largest first                                  */
+	size_t neighbour_count;	    /* largest first                                  */
+	double neighbour_prior_var; /* of their areas, relative                    */
 	double information[BH_CHOLESKY_MOST * BH_CHOLESKY_MOST]; /* per s/deg       */
 	size_t parameter_count; /* area, position, level, slope, neighbours       */
 } bh_view_of_line;
@@ -56,7 +57,7 @@ typedef enum { BH_FIT_AREA, BH_FIT_POSITION } bh_fit_parameter;
 
 /* Variance by counting of the area (relative) or the position (°²) when level, slope,
  * position, area and, if asked, the neighbours' areas are fitted: Cramér-Rao bound. A
- * neighbour's area is known beforehand to 50 %.
+ * neighbour's area is known beforehand as the request's share factor says.
  *   given    density_s_deg  exposure, aperture·s per degree, > 0
  *   returns  HUGE_VAL when the data do not determine it */
 double bh_view_variance(const bh_view_of_line *view, double density_s_deg,

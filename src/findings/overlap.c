@@ -7,9 +7,8 @@
 /* Ranges of separation in FWHM: below the first two lines have one top, above the second each
  * has its own foot. Common practice. */
 static const double merged_fwhm = 0.5, resolved_fwhm = 1.5;
-static const double least_share = 0.01;	 /* of the counts in the line's window */
-static const double least_price = 1.1;	 /* of the variance                    */
-static const double share_unknown = 0.5; /* a neighbour's area is known to 50 % */
+static const double least_share = 0.01; /* of the counts in the line's window */
+static const double least_price = 1.1;	/* of the variance                    */
 
 static const char *state(double separation_fwhm)
 {
@@ -149,7 +148,8 @@ static bool report(bh_findings *findings, const bh_target_result *t,
 				      { "purity", t->purity_frac, "" },
 				      { "price", t->overlap_price, "" },
 				      { "limit", limit, "" },
-				      { "neighbour_prior", share_unknown, "" } },
+				      { "neighbour_prior",
+					sqrt(line->neighbour_prior_var), "" } },
 			.evidence_count = 6,
 			.remedy = remedy,
 			.gain = better && gain > 1.2 ? gain : 0,

@@ -100,6 +100,7 @@ typedef struct {
 	size_t pattern_count;
 	bh_target_result *targets;
 	size_t target_count;
+	double displacement_shift_deg; /* of a line at 30°, by the specimen's displacement */
 	const char *step_reason;
 	bh_range *ranges;
 	size_t range_count;

@@ -86,10 +86,11 @@ typedef struct {
 	bh_composition mixture; /* count 0: not known            */
 	double density_g_cm3;	/* X-ray density of the mixture; 0: not known */
 	double holder_attenuation_cm2_g
-		[BH_MAX_LINES]; /* by line; 0: the holder gives no lines */
-	bool rates_known;	/* the mixture's composition is known */
-	double aperture_deg;	/* Δ                             */
-	double axial_frac;	/* h_eff/R                       */
+		[BH_MAX_LINES];	     /* by line; 0: the holder gives no lines */
+	bool rates_known;	     /* the mixture's composition is known */
+	double neighbour_prior_frac; /* how well a neighbour's area is known before */
+	double aperture_deg;	     /* Δ                             */
+	double axial_frac;	     /* h_eff/R                       */
 	bh_reflection
 		*reflections; /* in range first, then the others; by phase, d falling */
 	size_t reflection_count, in_range_count;

@@ -107,6 +107,24 @@ static bool about_phases(bh_plan *plan, bh_err *err)
 	return true;
 }
 
+static bool about_positions(bh_plan *plan, bh_err *err)
+{
+	bool asked = false;
+
+	for (size_t i = 0; i < plan->request->aim_count; i++)
+		asked = asked || plan->request->aims[i].position_error_deg > 0;
+	return !asked || add(plan,
+			     bh_arena_format(plan->arena,
+					     "The errors of positions are those of "
+					     "counting. A specimen %.2g mm "
+					     "off the axis shifts a line at 30° by "
+					     "%.3f°: refine that shift, or "
+					     "mix in a standard.",
+					     plan->request->specimen.displacement_mm,
+					     plan->displacement_shift_deg),
+			     err);
+}
+
 static bool about_model(bh_plan *plan, bh_err *err)
 {
 	const bh_request *request = plan->request;
@@ -139,5 +157,5 @@ bool bh_words_notes(bh_plan *plan, bh_err *err)
 		return bh_fail_memory(err);
 	return about_throughput(plan, err) && about_anodes(plan, err) &&
 	       about_displacement_b(plan, err) && about_phases(plan, err) &&
-	       about_model(plan, err);
+	       about_positions(plan, err) && about_model(plan, err);
 }

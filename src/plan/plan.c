@@ -7,11 +7,13 @@
 #include "data/holders.h"
 #include "design/design.h"
 #include "findings/findings.h"
+#include "physics/geometry.h"
 #include "physics/observe.h"
 #include "physics/pattern.h"
 #include "physics/structure.h"
 #include "physics/symmetry.h"
 #include "physics/xray.h"
+#include "plan/unsure.h"
 #include "plan/words.h"
 
 static const bh_tube *tube_of(const bh_request *request)
@@ -82,6 +84,8 @@ bool bh_plan_observe(bh_plan *plan, bh_arena *arena, const bh_request *request,
 	*plan = (bh_plan){ .arena = arena,
 			   .request = request,
 			   .instrument = request->instrument };
+	plan->displacement_shift_deg = bh_geometry_displacement_deg(
+		request->specimen.displacement_mm, request->instrument->radius_mm, 30);
 	if (!gather_phases(plan, err))
 		return false;
 	scene = scene_of(plan);
@@ -119,8 +123,10 @@ bool bh_plan_make(bh_plan *plan, bh_arena *arena, const bh_request *request, bh_
 			     err)) /* where peaks fall, how strong */
 		return false;
 	scene = scene_of(plan);
-	return draw(plan, err)			     /* the whole curve              */
-	       && bh_design(plan, &scene, err)	     /* step, ranges, times, errors  */
+	return draw(plan, err)		       /* the whole curve              */
+	       && bh_design(plan, &scene, err) /* step, ranges, times, errors  */
+	       && bh_unsure_find(plan, &scene,
+				 err) /* what is not known, and what it moves */
 	       && bh_findings_all(plan, &scene, err) /* what can go wrong            */
 	       && bh_words_notes(plan, err)	     /* what was assumed             */
 	       && bh_words_why(plan, &scene, err)    /* where numbers come from      */

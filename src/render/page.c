@@ -336,7 +336,7 @@ static void lines(paper *p, const bh_section *s, double size)
 	double label = label_column(p, s);
 
 	for (size_t i = 0; i < s->item_count; i++)
-		if (label > 0)
+		if (label > 0 && *s->items[i].lead)
 			labelled(p, &s->items[i], label, size);
 		else {
 			double h = bh_pen_words_height(

@@ -90,17 +90,15 @@ static size_t met(const bh_plan *plan)
 	return n;
 }
 
+/* The largest of what is unsure. */
 static const char *unsure_words(bh_builder *b)
 {
-	const bh_plan *plan = b->plan;
+	const bh_unsure *u = &b->plan->unsure[0];
 
-	if (plan->unsure_count == 0)
-		return "";
-	return bh_put(b,
-		      "%s to %s until the throughput is measured (factor %s either way)",
-		      bh_put_duration(b, plan->unsure[0].wall_low_s),
-		      bh_put_duration(b, plan->unsure[0].wall_high_s),
-		      bh_put_short(b, plan->unsure[0].factor, 2));
+	return bh_put(b, "all aims take %s to %s: %s (factor %s either way)",
+		      bh_put_duration(b, u->wall_low_s),
+		      bh_put_duration(b, u->wall_high_s), u->input,
+		      bh_put_short(b, u->factor, 2));
 }
 
 static const char *matter_words(bh_builder *b)
@@ -141,7 +139,7 @@ void bh_sheet_answer(bh_builder *b)
 	say(b, s, "specimen", matter_words(b));
 	say(b, s, "book", time_words(b));
 	if (plan->unsure_count)
-		say(b, s, "or", unsure_words(b));
+		say(b, s, "unsure", unsure_words(b));
 	say(b, s, "aims",
 	    bh_put(b, "%zu of %zu met; %zu finding%s, %zu of them severe", met(plan),
 		   plan->aim_count, plan->finding_count,

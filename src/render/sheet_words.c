@@ -71,12 +71,13 @@ void bh_sheet_steps(bh_builder *b)
 	say(b, s, "specimen",
 	    bh_put(b,
 		   "%s holder, %s × %s mm, %s mm deep; surface flat and level with the "
-		   "rim (0.1 mm "
+		   "rim (%s mm "
 		   "low shifts a line at 30° by %s°)%s.",
 		   specimen->holder, bh_put_short(b, specimen->length_mm, 3),
 		   bh_put_short(b, specimen->width_mm, 3),
 		   bh_put_short(b, specimen->thickness_mm, 3),
-		   bh_put_fixed(b, -11.068 / instrument->radius_mm, 3),
+		   bh_put_short(b, specimen->displacement_mm, 2),
+		   bh_put_fixed(b, plan->displacement_shift_deg, 3),
 		   specimen->spin ? "; spinner on" : ""));
 	say(b, s, "reference",
 	    bh_put(b,

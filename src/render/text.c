@@ -102,7 +102,7 @@ static void item(const page *p, const bh_item *i, size_t label)
 		plain(p);
 		used += bh_text_columns(i->lead);
 	}
-	if (label) { /* short labels stand in a column of their own */
+	if (label && *i->lead) { /* short labels stand in a column of their own */
 		size_t pad = INDENT + label > used ? INDENT + label - used : 1;
 
 		bh_text_repeat(p->to, " ", pad);
