@@ -143,11 +143,9 @@ static bool try_windows(bh_findings *findings, const bh_target_result *t, cure *
 	return true;
 }
 
-static bool try_voltage(bh_findings *findings, const bh_target_result *t, int z,
-			cure *best)
+static bool try_voltage(bh_findings *findings, const bh_target_result *t, cure *best)
 {
 	const bh_setting *now = &findings->plan->signal.setting;
-	double edge_keV = bh_xray_edge_keV(z, BH_SHELL_K);
 	double anode_keV = bh_xray_edge_keV(now->tube->anode->z, BH_SHELL_K);
 
 	for (double kV = now->kV - 5; kV >= fmax(1.5 * anode_keV, 15); kV -= 5) {
@@ -157,12 +155,24 @@ static bool try_voltage(bh_findings *findings, const bh_target_result *t, int z,
 		setting.mA = fmin(now->tube->most_mA, now->tube->most_W / kV);
 		if (!keep_if_better(
 			    findings, t, &setting,
-			    bh_say(findings, "%.0f kV and %.0f mA%s", kV, setting.mA,
-				   kV < edge_keV ? ", below the element's edge" : ""),
+			    bh_say(findings, "%.0f kV and %.0f mA", kV, setting.mA),
 			    best))
 			return false;
 	}
 	return true;
+}
+
+/* The best other anode, level and voltage for a target; the same for every element. */
+enum { ANODE, LEVEL, VOLTAGE, CURES };
+
+static bool find_cures(cure cures[CURES], bh_findings *findings,
+		       const bh_target_result *t)
+{
+	for (int i = 0; i < CURES; i++)
+		cures[i] = (cure){ "", 0 };
+	return try_anodes(findings, t, &cures[ANODE]) &&
+	       try_windows(findings, t, &cures[LEVEL]) &&
+	       try_voltage(findings, t, &cures[VOLTAGE]);
 }
 
 static const char *listed(bh_findings *findings, const cure *cures, size_t count)
@@ -195,17 +205,14 @@ static const char *exciter(bh_findings *findings, const char *name)
 	return "tungsten Lα1";
 }
 
-static bool report(bh_findings *findings, const bh_target_result *t, emitter e)
+static bool report(bh_findings *findings, const bh_target_result *t, emitter e,
+		   const cure cures[CURES])
 {
-	cure cures[3] = { { "", 0 }, { "", 0 }, { "", 0 } };
 	double cost = cost_of(findings, t, e.rate_cps), gain = 0;
 	double at_target = e.rate_cps, peak_cps = t->top_cps;
 	const char *by_continuum = exciter(findings, e.by);
 
-	if (!try_anodes(findings, t, &cures[0]) || !try_windows(findings, t, &cures[1]) ||
-	    !try_voltage(findings, t, e.z, &cures[2]))
-		return false;
-	for (size_t i = 0; i < 3; i++)
+	for (size_t i = 0; i < CURES; i++)
 		gain = fmax(gain, cures[i].gain);
 	return bh_findings_add(
 		findings,
@@ -232,11 +239,11 @@ static bool report(bh_findings *findings, const bh_target_result *t, emitter e)
 				      { "peak", peak_cps, "counts/s" },
 				      { "background", t->background_cps, "counts/s" },
 				      { "cost", cost, "" },
-				      { "gain_anode", cures[0].gain, "" },
-				      { "gain_level", cures[1].gain, "" },
-				      { "gain_voltage", cures[2].gain, "" } },
+				      { "gain_anode", cures[ANODE].gain, "" },
+				      { "gain_level", cures[LEVEL].gain, "" },
+				      { "gain_voltage", cures[VOLTAGE].gain, "" } },
 			.evidence_count = 9,
-			.remedy = listed(findings, cures, 3),
+			.remedy = listed(findings, cures, CURES),
 			.gain = gain > 1.1 ? gain : 0,
 		});
 }
@@ -247,14 +254,21 @@ bool bh_find_fluorescence(bh_findings *findings)
 	const bh_signal *signal = &plan->signal;
 	const bh_target_result *t = bh_findings_weakest(plan);
 	double total = total_cps(signal);
+	cure cures[CURES];
+	bool found = false;
 
 	if (!t)
 		return true;
 	for (size_t i = 0; i < signal->mixture.count; i++) {
 		emitter e = sum_of(signal, signal->mixture.elements[i].z);
 
-		if (e.rate_cps > least_of_background * t->background_cps &&
-		    e.rate_cps > 0.05 * total && !report(findings, t, e))
+		if (!(e.rate_cps > least_of_background * t->background_cps) ||
+		    !(e.rate_cps > 0.05 * total))
+			continue;
+		if (!found && !find_cures(cures, findings, t))
+			return false;
+		found = true;
+		if (!report(findings, t, e, cures))
 			return false;
 	}
 	return true;

@@ -7,6 +7,14 @@
 #include "physics/detector.h"
 #include "physics/geometry.h"
 
+/* Φ Ω/4π w σ_fl/(μ/ρ in + μ/ρ out) */
+static double depth_integral_cps(bh_photons photons, double mass_frac, double sigma_cm2_g,
+				 double path_cm2_g)
+{
+	return photons.flux_s * photons.solid_angle_sr / (4 * BH_PI) * mass_frac *
+	       sigma_cm2_g / path_cm2_g;
+}
+
 double bh_background_fluorescence_cps(const bh_composition *composition, size_t element,
 				      bh_fl_group group, bh_photons photons)
 {
@@ -16,10 +24,9 @@ double bh_background_fluorescence_cps(const bh_composition *composition, size_t 
 
 	if (!(sigma_cm2_g > 0) || !(out_keV > 0))
 		return 0;
-	return photons.flux_s * photons.solid_angle_sr / (4 * BH_PI) * e->mass_frac *
-	       sigma_cm2_g /
-	       (bh_absorb_cm2_g(composition, photons.energy_keV) +
-		bh_absorb_cm2_g(composition, out_keV));
+	return depth_integral_cps(photons, e->mass_frac, sigma_cm2_g,
+				  bh_absorb_cm2_g(composition, photons.energy_keV) +
+					  bh_absorb_cm2_g(composition, out_keV));
 }
 
 double bh_background_compton_cps(const bh_composition *composition, bh_photons photons,
@@ -72,13 +79,20 @@ typedef struct {
 	double cps, path_cm2_g;
 } emission;
 
-static emission by_line(const emitter *e, bh_photons photons)
+static emission emit(const emitter *e, bh_photons photons, double in_cm2_g)
 {
-	return (emission){ e->counted_frac * bh_background_fluorescence_cps(
-						     e->body->composition, e->element,
-						     e->group, photons),
-			   bh_absorb_cm2_g(e->body->composition, photons.energy_keV) +
-				   e->out_cm2_g };
+	double path_cm2_g = in_cm2_g + e->out_cm2_g;
+
+	return (emission){
+		e->counted_frac *
+			depth_integral_cps(
+				photons,
+				e->body->composition->elements[e->element].mass_frac,
+				bh_xray_fluorescence_cm2_g(e->z, e->group,
+							   photons.energy_keV),
+				path_cm2_g),
+		path_cm2_g
+	};
 }
 
 /* Sum over the continuum from the edge up, in bins that start at the edge: ≥ 60 energies
@@ -103,8 +117,10 @@ static emission by_continuum(const emitter *e, const bh_continuum *c,
 
 		if (bin >= c->count || !(c->flux_s_keV[bin] > 0))
 			continue;
-		one = by_line(e, (bh_photons){ energy_keV, c->flux_s_keV[bin] * step_keV,
-					       solid_angle_sr });
+		one = emit(e,
+			   (bh_photons){ energy_keV, c->flux_s_keV[bin] * step_keV,
+					 solid_angle_sr },
+			   c->attenuation_cm2_g[bin]);
 		sum.cps += one.cps;
 		sum.path_cm2_g += one.cps * one.path_cm2_g;
 	}
@@ -165,8 +181,8 @@ static void add_group(row_list *list, const bh_body *body, size_t element,
 		const bh_line *line = &beam->radiation->lines[k];
 
 		add_row(list, &e, line->name,
-			by_line(&e, (bh_photons){ line->energy_keV, line->flux_s,
-						  omega_sr }));
+			emit(&e, (bh_photons){ line->energy_keV, line->flux_s, omega_sr },
+			     bh_absorb_cm2_g(body->composition, line->energy_keV)));
 	}
 	add_row(list, &e, "continuum", by_continuum(&e, beam->continuum, omega_sr));
 }

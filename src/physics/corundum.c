@@ -27,9 +27,11 @@ bool bh_corundum_strength(double *strength, double *lorentz_polarization, bh_are
 	double wavelength_A = bh_anode_find("Cu")->ka1_A, d_A, two_theta_deg = 0, f2;
 	int planes[BH_MAX_EQUIVALENTS][3];
 	bh_mat3 reciprocal;
-	bool origin_open;
+	enum {
+		R_3C_HEXAGONAL = 460
+	}; /* row of the database: number 167, hexagonal axes */
 
-	if (!bh_symmetry_find(&phase.group, &origin_open, arena, "R -3 c:H", err) ||
+	if (!bh_symmetry_row(&phase.group, arena, R_3C_HEXAGONAL, err) ||
 	    !bh_structure_resolve(&phase, arena, err) ||
 	    !bh_cell_reciprocal(&reciprocal, &phase.cell))
 		return false;

@@ -1,28 +1,60 @@
 #include "plan/unsure.h"
 
+#include <string.h>
+
 #include "design/design.h"
+
+/* Share of the specimen's fluorescence that the continuum excites. */
+static double by_continuum_frac(const bh_signal *signal)
+{
+	double all = 0, continuum = 0;
+
+	for (size_t i = 0; i < signal->fluorescence_count; i++) {
+		const bh_fluorescence *f = &signal->fluorescence[i];
+
+		all += f->rate_cps;
+		if (strcmp(f->excited_by, "continuum") == 0)
+			continuum += f->rate_cps;
+	}
+	return all > 0 ? continuum / all : 0;
+}
+
+/* The same signal under a continuum that is stronger by a factor: what it excites and what of
+ * it is scattered go with it. */
+static bool scale_continuum(bh_signal *to, bh_arena *arena, const bh_signal *from,
+			    double factor, bh_err *err)
+{
+	double share = by_continuum_frac(from);
+
+	*to = *from;
+	to->background = bh_new(arena, bh_background, from->background_count);
+	if (!to->background)
+		return bh_fail_memory(err);
+	for (size_t i = 0; i < from->background_count; i++) {
+		const bh_background *b = &from->background[i];
+
+		to->background[i] = *b;
+		to->background[i].total +=
+			(factor - 1) * (b->continuum + share * b->fluorescence);
+	}
+	return true;
+}
 
 /* Wall time that all aims would take with another continuum: the whole design again. */
 static bool with_continuum(double *total_s, bh_plan *plan, const bh_scene *scene,
 			   double factor, bh_err *err)
 {
-	bh_instrument *instrument = bh_new(plan->arena, bh_instrument, 1);
 	bh_request *request = bh_new(plan->arena, bh_request, 1);
 	bh_plan other = *plan;
 	bh_scene there = *scene;
 
-	if (!instrument || !request)
+	if (!request)
 		return bh_fail_memory(err);
-	*instrument = *plan->instrument;
-	instrument->continuum_scale *= factor;
 	*request = *plan->request;
-	request->instrument = instrument;
 	request->booking.longest_s = 0;
 	other.request = there.request = request;
-	other.instrument = there.instrument = instrument;
-	other.targets = NULL;
 	other.target_count = other.aim_count = other.range_count = 0;
-	if (!bh_observe(&other.signal, plan->arena, &there, &plan->signal.setting, err) ||
+	if (!scale_continuum(&other.signal, plan->arena, &plan->signal, factor, err) ||
 	    !bh_design(&other, &there, err))
 		return false;
 	*total_s = other.times.total_s;

@@ -21,7 +21,7 @@ typedef struct {
 static void make(made *m, size_t count, const double at_deg[], const double area[],
 		 const bh_profile *shape, double background_cps)
 {
-	*m = (made){ .signal = { .rates_known = true } };
+	*m = (made){ .signal = { .rates_known = true, .neighbour_prior_frac = 0.5 } };
 	m->signal.radiation.count = 1;
 	m->signal.radiation.lines[0].kind = BH_KA1;
 	m->signal.reflections = m->reflections;
