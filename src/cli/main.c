@@ -29,14 +29,17 @@ static void print_help(void)
 
 /* Presets beside the program in its own tree, beside it when installed, and where it was
  * told at build time. */
-static void find_presets(bh_options *options, char rooms[2][PATH_MAX + 40])
+static void find_presets(bh_options *options, char rooms[2][PATH_MAX + 40],
+			 const char *called_as)
 {
 	static const char *const beside[2] = { "/../presets/instruments",
 					       "/../share/beamhour/presets/instruments" };
 	char own[PATH_MAX];
 	ssize_t n = readlink("/proc/self/exe", own, sizeof own - 1);
 
-	if (n > 0) {
+	if (n <= 0 && strchr(called_as, '/')) /* no /proc: as it was called */
+		n = snprintf(own, sizeof own, "%s", called_as);
+	if (n > 0 && (size_t)n < sizeof own) {
 		char *slash;
 
 		own[n] = '\0';
@@ -118,7 +121,7 @@ int main(int argc, char **argv)
 		print_help();
 		return BH_EXIT_DONE;
 	}
-	find_presets(&options, rooms);
+	find_presets(&options, rooms, argv[0]);
 	status = run(&options);
 	if (fflush(stdout) != 0 || ferror(stdout)) {
 		fprintf(stderr, "beamhour: cannot write standard output\n");

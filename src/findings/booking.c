@@ -8,6 +8,8 @@ static const char *duration(bh_findings *findings, double seconds)
 
 	if (minutes < 60)
 		return bh_say(findings, "%d min", minutes);
+	if (minutes >= 2880)
+		return bh_say(findings, "%d days", (minutes + 720) / 1440);
 	return bh_say(findings, "%d h %02d min", minutes / 60, minutes % 60);
 }
 
@@ -27,6 +29,46 @@ static const char *bought(bh_findings *findings)
 	return text;
 }
 
+/* Without a limit a plan may grow beyond all measure: say which aim makes it so. */
+static bool very_long(bh_findings *findings)
+{
+	static const double long_s = 86400;
+	const bh_plan *plan = findings->plan;
+	const bh_aim_result *dearest = NULL;
+	const char *total;
+
+	if (plan->times.total_s < long_s)
+		return true;
+	for (size_t i = 0; i < plan->aim_count; i++)
+		if (!dearest || plan->aims[i].price_s > dearest->price_s)
+			dearest = &plan->aims[i];
+	total = duration(findings, plan->times.total_s);
+	if (!dearest || !total)
+		return !dearest || bh_fail_memory(findings->err);
+	return bh_findings_add(
+		findings,
+		&(bh_finding){
+			.severity = BH_CAUTION,
+			.where = "",
+			.text = bh_say(
+				findings,
+				"The plan takes %s. The dearest aim is %s (%.2g %s)%s: "
+				"without it the counting would be %s shorter.",
+				total, dearest->what, dearest->wanted, dearest->unit,
+				dearest->aim->by_default
+					? ", set because the request has "
+					  "no aims"
+					: "",
+				duration(findings, dearest->price_s)),
+			.evidence = { { "planned", plan->times.total_s, "s" },
+				      { "dearest", dearest->price_s, "s" } },
+			.evidence_count = 2,
+			.remedy = "Ask for less there, narrow two_theta, or give a "
+				  "booking: the plan "
+				  "then says what it buys.",
+		});
+}
+
 bool bh_find_booking(bh_findings *findings)
 {
 	const bh_plan *plan = findings->plan;
@@ -35,7 +77,7 @@ bool bh_find_booking(bh_findings *findings)
 	const char *wanted, *room, *text, *total;
 
 	if (!plan->booking_short)
-		return true;
+		return very_long(findings);
 	wanted = duration(findings, plan->wanted_total_s);
 	room = duration(findings, room_s);
 	total = duration(findings, plan->times.total_s);

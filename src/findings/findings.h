@@ -33,8 +33,10 @@ bool bh_findings_all(bh_plan *plan, const bh_scene *scene, bh_err *err);
 /* Append a finding; false when memory is out or one of its texts is NULL. */
 bool bh_findings_add(bh_findings *findings, const bh_finding *finding);
 
-/* Text in the plan's arena; NULL: memory is out (bh_findings_add reports it). */
-#define bh_say(findings, ...) bh_arena_format((findings)->plan->arena, __VA_ARGS__)
+/* Text in the plan's arena, numbers without exponents ("2.3e+06" becomes "2 300 000"); NULL:
+ * memory is out (bh_findings_add reports it). */
+const char *bh_say(bh_findings *findings, const char *format, ...)
+	__attribute__((format(printf, 2, 3)));
 
 /* "goethite 1 0 1" of a target, "quartz 1 0 1" of a reflection ("3.29 Å" in a list). */
 const char *bh_findings_target(bh_findings *findings, const bh_target_result *target);

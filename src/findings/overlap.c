@@ -20,6 +20,8 @@ static const char *state(double separation_fwhm)
 static const char *line_word(const bh_plan *plan, size_t line)
 {
 	switch (plan->signal.radiation.lines[line].kind) {
+	case BH_KA2:
+		return " (its Kα2)";
 	case BH_KB:
 		return " (its Kβ)";
 	case BH_W_LA1:

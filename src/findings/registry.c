@@ -1,7 +1,13 @@
 #include "findings/findings.h"
 
 #include <math.h>
+#include <stdarg.h>
 #include <stdint.h>
+#include <stdio.h>
+#include <stdlib.h>
+#include <string.h>
+
+#include "base/fmt.h"
 
 /* clang-format off */
 const bh_finding_row bh_finding_rows[] = {
@@ -36,6 +42,65 @@ bool bh_findings_add(bh_findings *findings, const bh_finding *finding)
 	}
 	plan->findings[plan->finding_count++] = *finding;
 	return true;
+}
+
+/* Length of a number with an exponent that a text starts with, 0: none; *digits it has. */
+static size_t exponent_number(const char *text, int *digits)
+{
+	size_t i = strspn(text, "0123456789."), sign;
+
+	*digits = 0;
+	for (size_t k = 0; k < i; k++)
+		*digits += text[k] != '.';
+	if (i == 0 || text[i] != 'e' || (text[i + 1] != '+' && text[i + 1] != '-'))
+		return 0;
+	sign = i + 2;
+	i = strspn(text + sign, "0123456789");
+	return i ? sign + i : 0;
+}
+
+/* A copy with each such number written out. */
+static const char *written_out(bh_arena *arena, const char *text)
+{
+	size_t length = strlen(text) + 1, n = 0;
+	char *copy = bh_new(arena, char, length * 4);
+
+	while (copy && *text) {
+		char room[BH_FMT_ROOM];
+		int digits;
+		size_t skip = exponent_number(text, &digits);
+
+		if (skip) {
+			bh_fmt_digits(room, strtod(text, NULL), digits);
+			n += (size_t)snprintf(copy + n, length * 4 - n, "%s", room);
+		} else {
+			skip = strspn(text, "0123456789.");
+			skip = skip ? skip : 1;
+			memcpy(copy + n, text, skip);
+			n += skip;
+		}
+		text += skip;
+	}
+	return copy;
+}
+
+const char *bh_say(bh_findings *findings, const char *format, ...)
+{
+	bh_arena *arena = findings->plan->arena;
+	va_list args, again;
+	char *text = NULL;
+	int n;
+
+	va_start(args, format);
+	va_copy(again, args);
+	n = vsnprintf(NULL, 0, format, args);
+	if (n >= 0)
+		text = bh_new(arena, char, (size_t)n + 1);
+	if (text)
+		vsnprintf(text, (size_t)n + 1, format, again);
+	va_end(again);
+	va_end(args);
+	return text ? written_out(arena, text) : NULL;
 }
 
 static void severe_first(bh_plan *plan)

@@ -101,7 +101,7 @@ void bh_sheet_aims(bh_builder *b)
 			a->what,
 			bh_put_short(b, a->wanted, 3),
 			a->computed ? bh_put_digits(b, a->predicted, 2) : "–",
-			floor ? bh_put_digits(b, a->floor, 1) : "–",
+			floor ? bh_put_digits(b, a->floor, 2) : "–",
 			a->unit,
 			!a->computed   ? "not known"
 			: a->met       ? "yes"
