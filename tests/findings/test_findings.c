@@ -241,7 +241,7 @@ static void booking(void **state)
 {
 	static const char aims[] = HEMATITE "targets = {\"1 0 4\", \"0 1 2\"} }\n"
 					    "aim \"line\" { phase = \"hematite\" plane = "
-					    "\"0 1 2\" area_error = 0.3 }\n"
+					    "\"0 1 2\" area_error = 1 }\n"
 					    "specimen { grain_um = 1 spin = true }\n";
 	char text[1000];
 	const bh_plan *enough, *cut;
