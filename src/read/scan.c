@@ -396,10 +396,10 @@ static bool item(scanner *c, bh_scan_section *section, int depth)
 	c->at = end;
 	if (!name || !skip(c))
 		return false;
-	if (c->at < c->n && c->s[c->at] == '=' && name[strlen(name) - 1] == '+')
+	if (c->at + 1 < c->n && ((c->s[c->at] == '+' && c->s[c->at + 1] == '=') ||
+				 (c->s[c->at] == '=' && name[strlen(name) - 1] == '+')))
 		return bh_problem(c->problems, place,
-				  "\"+=\" is not allowed\nwrite = and the whole "
-				  "list");
+				  "\"+=\" is not allowed\nwrite = and the whole list");
 	if (c->at < c->n && c->s[c->at] == '=')
 		return assignment(c, section, name, place);
 	if (c->at < c->n &&
