@@ -315,7 +315,7 @@ bool bh_build_request(bh_request *request, bh_arena *arena, const bh_conf_sectio
 {
 	const bh_conf_section *booking = bh_conf_section_of(root, "booking");
 	double longest = bh_conf_number(BH_FILE_REQUEST, booking, "booking", "longest");
-	bool good;
+	bool good = problems->count == 0;
 
 	snprintf(request->title, sizeof request->title, "%s",
 		 bh_conf_text(BH_FILE_REQUEST, root, "", "title"));
@@ -327,13 +327,13 @@ bool bh_build_request(bh_request *request, bh_arena *arena, const bh_conf_sectio
 	request->share_factor =
 		bh_conf_number(BH_FILE_REQUEST, bh_conf_section_of(root, "unsure"),
 			       "unsure", "share_factor");
-	good = build_specimen(request, arena, root, problems);
+	good = build_specimen(request, arena, root, problems) && good;
 	good = build_phases(request, arena, root, problems) && good;
 	if (request->instrument) {
 		good = choose_anodes(request, root, options, problems) && good;
 		good = limits(request, root, problems) && good;
 	}
-	if (!good) /* what follows needs whole phases */
+	if (!good) /* what follows needs all of the phases */
 		return false;
 	if (!settle_shares(request, root, problems) ||
 	    !build_aims(request, arena, root, problems))

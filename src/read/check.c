@@ -245,6 +245,8 @@ static bool check_missing(const checker *c, const bh_scan_section *s, const char
 		    strcmp(key->section, section) != 0 || is_written(s, key->name))
 			continue;
 		good = false;
+		if (!c->whole) /* it may stand in a line that was passed over */
+			continue;
 		bh_problem(c->problems, s->place, "%s%s%s has no \"%s\"\n%s%s%s%s",
 			   *s->name ? "section \"" : "the file", s->name,
 			   *s->name ? "\"" : "", key->name, key->help,
@@ -276,8 +278,7 @@ const char *bh_check_key_section(const bh_scan_section *section, bh_key_file fil
 	return NULL;
 }
 
-static bool check_section(const checker *c, const bh_scan_section *s,
-			  const char *section);
+static bool check_section(const checker *c, bh_scan_section *s, const char *section);
 
 static bool check_titles(const checker *c, const bh_scan_section *parent,
 			 const bh_scan_section *s, const bh_section_kind *kind)
@@ -313,22 +314,25 @@ static bool check_titles(const checker *c, const bh_scan_section *parent,
 	return good;
 }
 
-static bool check_subsections(const checker *c, const bh_scan_section *s)
+static bool check_subsections(const checker *c, bh_scan_section *s)
 {
 	bool good = true;
 
 	for (size_t i = 0; i < s->section_count; i++) {
-		const bh_scan_section *sub = s->sections[i];
+		bh_scan_section *sub = s->sections[i];
 		const bh_section_kind *kind = kind_of(c->file, s->name, sub->name);
 		const char *keys;
 
+		sub->bad = true;
 		if (!kind) {
 			good = unknown_section(c, sub, s->name);
 			continue;
 		}
-		good = check_titles(c, s, sub, kind) && good;
+		sub->bad = !check_titles(c, s, sub, kind);
 		keys = bh_check_key_section(sub, c->file, c->problems);
-		good = keys && check_section(c, sub, keys) && good;
+		if (!keys || !check_section(c, sub, keys))
+			sub->bad = true;
+		good = good && !sub->bad;
 	}
 	for (size_t i = 0; c->whole && i < bh_section_kind_count; i++) {
 		const bh_section_kind *kind = &bh_section_kinds[i];
@@ -348,24 +352,22 @@ static bool check_subsections(const checker *c, const bh_scan_section *s)
 	return good;
 }
 
-static bool check_section(const checker *c, const bh_scan_section *s, const char *section)
+static bool check_section(const checker *c, bh_scan_section *s, const char *section)
 {
 	bool good = true;
 
 	for (size_t i = 0; i < s->key_count; i++) {
 		const bh_key *key = bh_key_find(c->file, section, s->keys[i].name);
 
-		good = (key ? check_key(c, &s->keys[i], key)
-			    : unknown_key(c, &s->keys[i], section, section)) &&
-		       good;
+		s->keys[i].bad = !(key ? check_key(c, &s->keys[i], key)
+				       : unknown_key(c, &s->keys[i], section, section));
+		good = good && !s->keys[i].bad;
 	}
-	if (c->whole)
-		good = check_missing(c, s, section) && good;
+	good = check_missing(c, s, section) && good;
 	return check_subsections(c, s) && good;
 }
 
-bool bh_check(const bh_scan_section *root, bh_key_file file, bool whole,
-	      bh_problems *problems)
+bool bh_check(bh_scan_section *root, bh_key_file file, bool whole, bh_problems *problems)
 {
 	checker c = { file, whole, problems };
 

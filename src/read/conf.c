@@ -148,16 +148,21 @@ static bh_conf_section *build(builder *b, const bh_scan_section *s, cfg_t *cfg)
 	if (!made->entries || !made->sections)
 		return NULL;
 	for (size_t i = 0; i < s->key_count; i++) {
-		bh_conf_entry *entry = &made->entries[made->entry_count++];
+		bh_conf_entry *entry = &made->entries[made->entry_count];
 
+		if (s->keys[i].bad)
+			continue;
+		made->entry_count++;
 		entry->key = bh_key_find(b->file, made->key_section, s->keys[i].name);
 		if (!fill_entry(b, entry, &s->keys[i], cfg))
 			return NULL;
 	}
 	for (size_t i = 0; i < s->section_count; i++) {
-		bh_conf_section *sub =
-			build(b, s->sections[i], partner(cfg, s->sections[i]));
+		bh_conf_section *sub;
 
+		if (s->sections[i]->bad)
+			continue;
+		sub = build(b, s->sections[i], partner(cfg, s->sections[i]));
 		if (!sub)
 			return NULL;
 		made->sections[made->section_count++] = sub;
@@ -195,10 +200,13 @@ static bool parse(bh_conf_section **root, bh_arena *arena, bh_key_file kind,
 	return good;
 }
 
-static int by_place(const void *a, const void *b)
+int bh_conf_by_place(const void *a, const void *b)
 {
 	const bh_err *p = a, *q = b;
+	int files = strcmp(p->file, q->file);
 
+	if (files != 0)
+		return files;
 	if (p->line != q->line)
 		return p->line < q->line ? -1 : 1;
 	return (p->col > q->col) - (p->col < q->col);
@@ -208,21 +216,26 @@ bool bh_conf_read(bh_conf_section **root, bh_arena *arena, bh_key_file kind,
 		  const char *file, const char *bytes, size_t length,
 		  bh_problems *problems)
 {
-	bh_text text = { 0 };
 	bh_scan_section *scanned = NULL;
 	size_t before = problems->count;
-	bool good;
+	bh_text text = { 0 };
+	bool whole;
 
-	good = bh_scan(&scanned, &text, arena, file, bytes, length, problems);
-	if (scanned) /* what the scan could read is checked even behind a broken line */
-		good = bh_check(scanned, kind, good, problems) && good;
-	good = good && problems->count == before && !problems->lost &&
-	       parse(root, arena, kind, scanned, text.bytes ? text.bytes : "", problems);
+	*root = NULL;
+	whole = bh_scan(&scanned, arena, file, bytes, length, problems);
+	if (scanned) { /* what is good is read even beside what is bad */
+		bh_check(scanned, kind, whole, problems);
+		bh_scan_write(&text, scanned);
+		problems->lost = problems->lost || text.lost;
+		if (!problems->lost)
+			parse(root, arena, kind, scanned, text.bytes ? text.bytes : "",
+			      problems);
+	}
 	bh_text_free(&text);
 	if (problems->count > before)
 		qsort(problems->items + before, problems->count - before,
-		      sizeof *problems->items, by_place);
-	return good;
+		      sizeof *problems->items, bh_conf_by_place);
+	return *root && problems->count == before && !problems->lost;
 }
 
 const bh_conf_entry *bh_conf_entry_of(const bh_conf_section *section, const char *key)

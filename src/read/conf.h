@@ -37,10 +37,14 @@ typedef struct bh_conf_section {
 /* Parse and check a file: syntax, known sections and keys, types, ranges, words, what must be
  * given. All problems are noted in one run.
  *   given    file  borrowed; stands in every place
+ *   returns  *root: what is good of the file, NULL when nothing is
  *   false    problems noted */
 bool bh_conf_read(bh_conf_section **root, bh_arena *arena, bh_key_file kind,
 		  const char *file, const char *bytes, size_t length,
 		  bh_problems *problems);
+
+/* Order of problems for qsort: file, line, column. */
+int bh_conf_by_place(const void *a, const void *b);
 
 /* The entry of a key, NULL when the file does not give it. */
 const bh_conf_entry *bh_conf_entry_of(const bh_conf_section *section, const char *key);

@@ -30,7 +30,6 @@ static bool is_file(const char *path)
 static const char *title_of(bh_arena *arena, const char *path)
 {
 	bh_problems ignored = { .arena = arena };
-	bh_text copy = { 0 };
 	bh_scan_section *root = NULL;
 	const char *title = "";
 	FILE *file = fopen(path, "rb");
@@ -40,11 +39,10 @@ static const char *title_of(bh_arena *arena, const char *path)
 	if (!file)
 		return title;
 	if (bh_scan_load(&bytes, &length, arena, path, file, &ignored) &&
-	    bh_scan(&root, &copy, arena, path, bytes, length, &ignored))
+	    bh_scan(&root, arena, path, bytes, length, &ignored))
 		for (size_t i = 0; i < root->key_count; i++)
 			if (strcmp(root->keys[i].name, "title") == 0)
 				title = root->keys[i].values[0].text;
-	bh_text_free(&copy);
 	fclose(file);
 	return title;
 }

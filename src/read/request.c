@@ -2,6 +2,7 @@
 
 #include <errno.h>
 #include <stdio.h>
+#include <stdlib.h>
 #include <string.h>
 #include <sys/stat.h>
 
@@ -33,6 +34,8 @@ static bool load_instrument(bh_request *request, bh_arena *arena,
 	bh_instrument *instrument;
 	const char *path;
 
+	if (!*name && problems->count > 0) /* it may stand in a line that is wrong */
+		return false;
 	if (!*name)
 		return bh_problem(problems, place,
 				  "the request names no instrument\nadd instrument = "
@@ -63,11 +66,16 @@ bool bh_request_read_text(bh_request **request, bh_arena *arena, const char *nam
 		return false;
 	}
 	snprintf((*request)->file, sizeof(*request)->file, "%s", file);
-	if (!bh_conf_read(&root, arena, BH_FILE_REQUEST, file, text, length, problems))
+	good = bh_conf_read(&root, arena, BH_FILE_REQUEST, file, text, length, problems);
+	if (!root)
 		return false;
-	good = load_instrument(*request, arena, root, options, problems);
-	return bh_build_request(*request, arena, root, options, problems) && good &&
-	       !problems->lost && problems->count == 0;
+	/* go on with what is good: one run reports all problems */
+	good = load_instrument(*request, arena, root, options, problems) && good;
+	good = bh_build_request(*request, arena, root, options, problems) && good;
+	if (problems->count > 1)
+		qsort(problems->items, problems->count, sizeof *problems->items,
+		      bh_conf_by_place);
+	return good && !problems->lost && problems->count == 0;
 }
 
 bool bh_request_read(bh_request **request, bh_arena *arena, const char *path,

@@ -10,8 +10,6 @@ typedef struct {
 	size_t ids;
 	bh_arena *arena;
 	bh_problems *problems;
-	bh_text *out; /* parser's copy; written as far as `copied` */
-	size_t copied;
 	bool recovered; /* a line was given up: braces may not balance any more */
 	bool lost;
 } scanner;
@@ -64,40 +62,19 @@ static void new_line(scanner *c)
 	c->line_start = c->at + 1;
 }
 
-/* Copy what was passed since the last copy. */
-static void copy_to(scanner *c, size_t at)
-{
-	bh_text_add_bytes(c->out, c->s + c->copied, at - c->copied);
-	c->copied = at;
-}
-
-/* Blank a stretch in the parser's copy, line ends kept. */
-static void blank_to(scanner *c, size_t from, size_t to)
-{
-	copy_to(c, from);
-	for (size_t i = from; i < to; i++)
-		bh_text_add(c->out, c->s[i] == '\n' ? "\n" : " ");
-	c->copied = to;
-}
-
 static void skip_line_comment(scanner *c)
 {
-	size_t from = c->at;
-
 	while (c->at < c->n && c->s[c->at] != '\n')
 		c->at++;
-	blank_to(c, from, c->at);
 }
 
 static bool skip_block_comment(scanner *c)
 {
 	bh_place place = here(c);
-	size_t from = c->at;
 
 	for (c->at += 2; c->at + 1 < c->n; c->at++) {
 		if (c->s[c->at] == '*' && c->s[c->at + 1] == '/') {
 			c->at += 2;
-			blank_to(c, from, c->at);
 			return true;
 		}
 		if (c->s[c->at] == '\n')
@@ -181,7 +158,7 @@ static bool quoted(scanner *c, bh_scan_value *value)
 		return bh_problem(c->problems, value->place,
 				  "this text is not closed\nclose it with %c", quote);
 	value->text = take(c, from, c->at);
-	value->quoted = true;
+	value->quote = quote;
 	c->at++;
 	return value->text != NULL;
 }
@@ -341,7 +318,6 @@ static bool section_at(scanner *c, bh_scan_section *parent, const char *name,
 {
 	bh_scan_section *made = add_section(c, parent);
 	bh_scan_value title;
-	size_t from = c->at;
 
 	if (!made)
 		return false;
@@ -352,9 +328,6 @@ static bool section_at(scanner *c, bh_scan_section *parent, const char *name,
 			return false;
 		made->title = title.text;
 		made->title_place = title.place;
-		copy_to(c, from);
-		bh_text_format(c->out, "\"%zu\"", made->id);
-		c->copied = c->at;
 		if (!skip(c))
 			return false;
 	}
@@ -498,16 +471,15 @@ static bool clean(scanner *c)
 	return good;
 }
 
-bool bh_scan(bh_scan_section **root, bh_text *parser_text, bh_arena *arena,
-	     const char *file, const char *bytes, size_t length, bh_problems *problems)
+bool bh_scan(bh_scan_section **root, bh_arena *arena, const char *file, const char *bytes,
+	     size_t length, bh_problems *problems)
 {
 	scanner c = { .file = file,
 		      .s = bytes,
 		      .n = length,
 		      .line = 1,
 		      .arena = arena,
-		      .problems = problems,
-		      .out = parser_text };
+		      .problems = problems };
 	size_t before = problems->count;
 	bool good;
 
@@ -523,8 +495,43 @@ bool bh_scan(bh_scan_section **root, bh_text *parser_text, bh_arena *arena,
 	(*root)->name = "";
 	(*root)->place = (bh_place){ file, 1, 1 };
 	good = clean(&c) && items(&c, *root, 0);
-	copy_to(&c, c.n);
-	if (c.lost || parser_text->lost)
+	if (c.lost)
 		problems->lost = true;
 	return good && problems->count == before && !problems->lost;
+}
+
+/* Quotes as written: the parser resolves escapes inside double ones only. */
+static void write_value(bh_text *text, const bh_scan_value *value)
+{
+	char quote = value->quote ? value->quote : '\'';
+
+	bh_text_format(text, "%c%s%c", quote, value->text, quote);
+}
+
+void bh_scan_write(bh_text *text, const bh_scan_section *section)
+{
+	for (size_t i = 0; i < section->key_count; i++) {
+		const bh_scan_key *key = &section->keys[i];
+
+		if (key->bad)
+			continue;
+		bh_text_format(text, "%s = %s", key->name, key->list ? "{" : "");
+		for (size_t k = 0; k < key->count; k++) {
+			bh_text_add(text, k ? ", " : "");
+			write_value(text, &key->values[k]);
+		}
+		bh_text_add(text, key->list ? "}\n" : "\n");
+	}
+	for (size_t i = 0; i < section->section_count; i++) {
+		const bh_scan_section *sub = section->sections[i];
+
+		if (sub->bad)
+			continue;
+		bh_text_add(text, sub->name);
+		if (sub->title)
+			bh_text_format(text, " \"%zu\"", sub->id);
+		bh_text_add(text, " {\n");
+		bh_scan_write(text, sub);
+		bh_text_add(text, "}\n");
+	}
 }

@@ -14,7 +14,7 @@ enum { BH_FILE_MOST = 1 << 20, BH_LINE_MOST = 4096, BH_DEPTH_MOST = 4 };
 /* One value as written. */
 typedef struct {
 	const char *text; /* inside the quotes, escapes not resolved (conf does that) */
-	bool quoted;
+	char quote;	  /* ' or ", 0: none */
 	bh_place place;
 } bh_scan_value;
 
@@ -22,6 +22,7 @@ typedef struct {
 	const char *name;
 	bh_place place;
 	bool list; /* written in braces */
+	bool bad;  /* set by check: left out of what is parsed */
 	bh_scan_value *values;
 	size_t count;
 } bh_scan_key;
@@ -31,6 +32,7 @@ typedef struct bh_scan_section {
 	const char *name, *title; /* title NULL: none written */
 	bh_place place, title_place;
 	size_t id; /* counts all sections of the file */
+	bool bad;  /* set by check: it or something in it */
 	bh_scan_key *keys;
 	size_t key_count, key_room;
 	struct bh_scan_section **sections;
@@ -45,10 +47,13 @@ bool bh_scan_load(char **bytes, size_t *length, bh_arena *arena, const char *fil
 /* Take a file apart: every key, value and section with its place. What the parser behind it
  * would take silently (an open brace, a stray NUL, ${...}, +=, include()) is a problem here.
  *   given    file  borrowed, stands in every place
- *   returns  *root; parser_text for the parser: comments blanked, lines kept, each title
- *            replaced by the section's id
+ *   returns  *root, as much of it as could be read; NULL when memory is out
  *   false    problems noted */
-bool bh_scan(bh_scan_section **root, bh_text *parser_text, bh_arena *arena,
-	     const char *file, const char *bytes, size_t length, bh_problems *problems);
+bool bh_scan(bh_scan_section **root, bh_arena *arena, const char *file, const char *bytes,
+	     size_t length, bh_problems *problems);
+
+/* What is good of a scanned file, for the parser: no comments, titles replaced by the
+ * section's id (the parser lets a second section of one title replace the first). */
+void bh_scan_write(bh_text *text, const bh_scan_section *root);
 
 #endif
