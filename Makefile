@@ -14,7 +14,7 @@ NEEDS := libconfuse:libconfuse-dev libxrl:libxrl-dev spglib:libsymspg-dev \
 LIBS  := $(foreach need,$(NEEDS),$(firstword $(subst :, ,$(need))))
 BUILD_PACKAGES := gcc libc6-dev pkg-config $(foreach need,$(NEEDS),$(lastword $(subst :, ,$(need)))) \
                   fonts-dejavu-core
-CHECK_PACKAGES := libcmocka-dev poppler-utils $(if $(MEMCHECK),valgrind)
+CHECK_PACKAGES := libcmocka-dev poppler-utils python3-jsonschema $(if $(MEMCHECK),valgrind)
 
 ifneq ($(filter-out demo check clean format help,$(or $(MAKECMDGOALS),all)),)
 missing := $(foreach need,$(NEEDS),$(if $(shell pkg-config --exists \
@@ -80,6 +80,7 @@ format:
 	clang-format -i $(wildcard src/*/*.[ch] include/*.h tests/*/*.[ch])
 install: all
 	install -Dm755 $(BUILD)/beamhour $(DESTDIR)$(PREFIX)/bin/beamhour
+	install -Dm644 include/beamhour-plan.schema.json $(DESTDIR)$(PREFIX)/share/beamhour/beamhour-plan.schema.json
 	for file in $(wildcard presets/*/* examples/*); do \
 	    install -Dm644 $$file $(DESTDIR)$(PREFIX)/share/beamhour/$$file || exit 1; done
 uninstall:

@@ -106,19 +106,18 @@ void bh_sheet_aims(bh_builder *b)
 			!a->computed   ? "not known"
 			: a->met       ? "yes"
 			: a->reachable ? "no"
-				       : "not by counting",
+				       : "no: floor",
 			a->computed ? bh_put_duration(b, a->price_s) : "–",
 		};
 
 		bh_put_row(b, s, cells);
 	}
-	bh_put_item(
-		b, s,
-		(bh_item){
-			.lead = "floor",
-			.text = "what no count time gets below: grains, and neighbours "
-				"known to 50 %",
-			.then = "" });
+	bh_put_item(b, s,
+		    (bh_item){ .lead = "floor",
+			       .text = "what no count time gets below: grains, and what "
+				       "is not known "
+				       "of neighbours",
+			       .then = "" });
 	bh_put_item(
 		b, s,
 		(bh_item){

@@ -173,22 +173,35 @@ static void choose_columns(layout *l, const bh_table *t, bool wide)
 		}
 }
 
-/* Leave out what is dispensable, then narrow the widest column of words. */
+/* The widest column of words, SIZE_MAX when all are narrow. */
+static size_t wordy_column(const layout *l, const bh_table *t)
+{
+	size_t widest = SIZE_MAX;
+
+	for (size_t i = 0; i < l->count; i++)
+		if (t->columns[l->index[i]].align == BH_LEFT && l->width[i] > 8 &&
+		    (widest == SIZE_MAX || l->width[i] > l->width[widest]))
+			widest = i;
+	return widest;
+}
+
+/* Leave out what is dispensable, narrow the columns of words, and on a very narrow terminal
+ * leave out numbers from the last but one on. */
 static void fit(layout *l, const bh_table *t, size_t columns)
 {
 	choose_columns(l, t, true);
 	if (total(l) > columns)
 		choose_columns(l, t, false);
-	while (total(l) > columns) {
-		size_t widest = SIZE_MAX;
+	while (total(l) > columns && l->count > 2) {
+		size_t widest = wordy_column(l, t);
 
-		for (size_t i = 0; i < l->count; i++)
-			if (t->columns[l->index[i]].align == BH_LEFT &&
-			    (widest == SIZE_MAX || l->width[i] > l->width[widest]))
-				widest = i;
-		if (widest == SIZE_MAX || l->width[widest] <= 8)
-			return;
-		l->width[widest]--;
+		if (widest != SIZE_MAX) {
+			l->width[widest]--;
+			continue;
+		}
+		l->count--;
+		l->index[l->count - 1] = l->index[l->count];
+		l->width[l->count - 1] = l->width[l->count];
 	}
 }
 
