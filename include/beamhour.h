@@ -50,6 +50,10 @@ char *beamhour_render(const beamhour_plan *plan, const char *kind, size_t *lengt
 void beamhour_bytes_free(char *bytes);
 void beamhour_plan_free(beamhour_plan *plan);
 
+/* Give back what the drawing libraries keep until the end of the process. Only when nothing
+ * else in the process uses pango or cairo. */
+void beamhour_release(void);
+
 #ifdef __cplusplus
 }
 #endif

@@ -114,3 +114,8 @@ void beamhour_plan_free(beamhour_plan *plan)
 	bh_arena_free(plan->arena);
 	free(plan);
 }
+
+void beamhour_release(void)
+{
+	bh_page_release();
+}

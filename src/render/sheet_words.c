@@ -35,12 +35,14 @@ static void step_ranges(bh_builder *b, bh_section *s)
 
 	if (plan->scout)
 		say(b, s, "scout scan", plan->scout);
-	if (plan->range_count)
+	if (plan->range_count == 1)
+		say(b, s, "range", "Type in the range of the table and start.");
+	else if (plan->range_count)
 		say(b, s, "ranges",
 		    bh_put(b,
-			   "Type in the %zu range%s of the table, in that order, and "
+			   "Type in the %zu ranges of the table, in that order, and "
 			   "start.",
-			   plan->range_count, plan->range_count == 1 ? "" : "s"));
+			   plan->range_count));
 }
 
 void bh_sheet_steps(bh_builder *b)
