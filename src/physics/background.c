@@ -95,23 +95,25 @@ static emission emit(const emitter *e, bh_photons photons, double in_cm2_g)
 	};
 }
 
-/* Sum over the continuum from the edge up, in bins that start at the edge: ≥ 60 energies
- * however near the edge lies to the tube voltage. */
+/* Sum over the continuum from the edge up. Energies stand closer near the edge, where most is
+ * excited and the foil and the anode have edges of their own. */
 static emission by_continuum(const emitter *e, const bh_continuum *c,
 			     double solid_angle_sr)
 {
-	enum { ENERGIES = 80 };
+	enum { ENERGIES = 160 };
 	bool k_shell = e->group == BH_FL_KA || e->group == BH_FL_KB;
 	double edge_keV = bh_xray_edge_keV(e->z, k_shell ? BH_SHELL_K : BH_SHELL_L3);
-	double top_keV = c->low_keV + c->step_keV * (double)c->count, step_keV;
+	double top_keV = c->low_keV + c->step_keV * (double)c->count, ratio;
 	double from_keV = fmax(edge_keV, c->low_keV);
 	emission sum = { 0, 0 };
 
 	if (!(edge_keV > 0) || from_keV >= top_keV)
 		return sum;
-	step_keV = (top_keV - from_keV) / ENERGIES;
-	for (int i = 0; i < ENERGIES; i++) {
-		double energy_keV = from_keV + (i + 0.5) * step_keV;
+	ratio = pow(top_keV / from_keV, 1.0 / ENERGIES);
+	for (double low_keV = from_keV; low_keV * sqrt(ratio) < top_keV;
+	     low_keV *= ratio) {
+		double step_keV = low_keV * (ratio - 1),
+		       energy_keV = low_keV + step_keV / 2;
 		size_t bin = bh_continuum_bin(c, energy_keV);
 		emission one;
 
