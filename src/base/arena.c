@@ -81,18 +81,27 @@ char *bh_arena_text(bh_arena *arena, const char *text)
 	return copy ? memcpy(copy, text, n) : NULL;
 }
 
-char *bh_arena_format(bh_arena *arena, const char *format, ...)
+char *bh_arena_vformat(bh_arena *arena, const char *format, va_list args)
 {
-	va_list args, again;
+	va_list again;
 	char *text = NULL;
 	int n;
 
-	va_start(args, format);
 	va_copy(again, args);
 	n = vsnprintf(NULL, 0, format, args);
 	if (n >= 0 && (text = bh_new(arena, char, (size_t)n + 1)))
 		vsnprintf(text, (size_t)n + 1, format, again);
 	va_end(again);
+	return text;
+}
+
+char *bh_arena_format(bh_arena *arena, const char *format, ...)
+{
+	va_list args;
+	char *text;
+
+	va_start(args, format);
+	text = bh_arena_vformat(arena, format, args);
 	va_end(args);
 	return text;
 }

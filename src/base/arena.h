@@ -1,6 +1,7 @@
 #ifndef BASE_ARENA_H
 #define BASE_ARENA_H
 
+#include <stdarg.h>
 #include <stddef.h>
 
 /* Memory with the lifetime of one plan. Every block is its own calloc on a list, so the
@@ -22,6 +23,8 @@ void *bh_arena_resize(bh_arena *arena, void *block, size_t old_count, size_t new
 char *bh_arena_text(bh_arena *arena, const char *text); /* a copy; NULL: memory is out */
 char *bh_arena_format(bh_arena *arena, const char *format, ...)
 	__attribute__((format(printf, 2, 3)));
+char *bh_arena_vformat(bh_arena *arena, const char *format, va_list args)
+	__attribute__((format(printf, 2, 0)));
 
 #define bh_new(arena, type, count) ((type *)bh_arena_take((arena), (count), sizeof(type)))
 #define bh_grow(arena, block, type, old_count, new_count)                                \

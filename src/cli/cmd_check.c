@@ -14,20 +14,17 @@ static void summary(const bh_request *request)
 	       request->two_theta_max_deg);
 }
 
-int bh_cmd_check(const bh_options *options)
+static int checked(bh_arena *arena, const bh_options *options)
 {
-	bh_err err = { BH_OK, 0, 0, "", "", "" };
-	bh_arena *arena = bh_arena_new();
 	bh_request *request;
-	int status;
+	int status = bh_open_request(&request, arena, options);
 
-	if (!arena) {
-		bh_fail_memory(&err);
-		return bh_report(&err);
-	}
-	status = bh_open_request(&request, arena, options);
 	if (status == BH_EXIT_DONE && !options->quiet)
 		summary(request);
-	bh_arena_free(arena);
 	return status;
+}
+
+int bh_cmd_check(const bh_options *options)
+{
+	return bh_with_arena(options, checked);
 }

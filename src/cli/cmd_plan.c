@@ -43,20 +43,9 @@ static int made(bh_arena *arena, const bh_options *options)
 
 int bh_cmd_plan(const bh_options *options)
 {
-	bh_err err = { BH_OK, 0, 0, "", "", "" };
-	bh_arena *arena;
 	int status = bh_outputs_check(options, 1u << BH_AS_TEXT | 1u << BH_AS_JSON |
 						       1u << BH_AS_PDF | 1u << BH_AS_SVG |
 						       1u << BH_AS_PNG);
 
-	if (status != BH_EXIT_DONE)
-		return status;
-	arena = bh_arena_new();
-	if (!arena) {
-		bh_fail_memory(&err);
-		return bh_report(&err);
-	}
-	status = made(arena, options);
-	bh_arena_free(arena);
-	return status;
+	return status == BH_EXIT_DONE ? bh_with_arena(options, made) : status;
 }

@@ -48,15 +48,5 @@ static int show(bh_arena *arena, const bh_options *options)
 
 int bh_cmd_presets(const bh_options *options)
 {
-	bh_err err = { BH_OK, 0, 0, "", "", "" };
-	bh_arena *arena = bh_arena_new();
-	int status;
-
-	if (!arena) {
-		bh_fail_memory(&err);
-		return bh_report(&err);
-	}
-	status = options->argument_count ? show(arena, options) : list(arena, options);
-	bh_arena_free(arena);
-	return status;
+	return bh_with_arena(options, options->argument_count ? show : list);
 }

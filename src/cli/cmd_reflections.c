@@ -53,19 +53,8 @@ static int listed(bh_arena *arena, const bh_options *options)
 
 int bh_cmd_reflections(const bh_options *options)
 {
-	bh_err err = { BH_OK, 0, 0, "", "", "" };
-	bh_arena *arena;
 	int status = bh_outputs_check(options, 1u << BH_AS_TEXT | 1u << BH_AS_JSON |
 						       1u << BH_AS_CSV);
 
-	if (status != BH_EXIT_DONE)
-		return status;
-	arena = bh_arena_new();
-	if (!arena) {
-		bh_fail_memory(&err);
-		return bh_report(&err);
-	}
-	status = listed(arena, options);
-	bh_arena_free(arena);
-	return status;
+	return status == BH_EXIT_DONE ? bh_with_arena(options, listed) : status;
 }

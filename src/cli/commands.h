@@ -35,6 +35,10 @@ int bh_cmd_new(const bh_options *options);
 int bh_report(const bh_err *err);
 int bh_report_all(const bh_problems *problems);
 
+/* Run a command's work with memory that lives as long as it. */
+int bh_with_arena(const bh_options *options,
+		  int (*work)(bh_arena *arena, const bh_options *options));
+
 /* Read the request named by the first argument. Returns BH_EXIT_DONE or what was reported. */
 int bh_open_request(bh_request **request, bh_arena *arena, const bh_options *options);
 

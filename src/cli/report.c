@@ -42,6 +42,23 @@ int bh_report_all(const bh_problems *problems)
 	return worst;
 }
 
+int bh_with_arena(const bh_options *options,
+		  int (*work)(bh_arena *arena, const bh_options *options))
+{
+	bh_arena *arena = bh_arena_new();
+	int status;
+
+	if (!arena) {
+		bh_err err = { BH_OK, 0, 0, "", "", "" };
+
+		bh_fail_memory(&err);
+		return bh_report(&err);
+	}
+	status = work(arena, options);
+	bh_arena_free(arena);
+	return status;
+}
+
 int bh_open_request(bh_request **request, bh_arena *arena, const bh_options *options)
 {
 	bh_problems problems = { .arena = arena };

@@ -87,18 +87,11 @@ static const char *written_out(bh_arena *arena, const char *text)
 const char *bh_say(bh_findings *findings, const char *format, ...)
 {
 	bh_arena *arena = findings->plan->arena;
-	va_list args, again;
-	char *text = NULL;
-	int n;
+	va_list args;
+	char *text;
 
 	va_start(args, format);
-	va_copy(again, args);
-	n = vsnprintf(NULL, 0, format, args);
-	if (n >= 0)
-		text = bh_new(arena, char, (size_t)n + 1);
-	if (text)
-		vsnprintf(text, (size_t)n + 1, format, again);
-	va_end(again);
+	text = bh_arena_vformat(arena, format, args);
 	va_end(args);
 	return text ? written_out(arena, text) : NULL;
 }

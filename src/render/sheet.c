@@ -9,21 +9,13 @@
 
 const char *bh_put(bh_builder *b, const char *format, ...)
 {
-	va_list args, again;
-	char *text = NULL;
-	int n;
+	va_list args;
+	char *text;
 
 	va_start(args, format);
-	va_copy(again, args);
-	n = vsnprintf(NULL, 0, format, args);
-	if (n >= 0)
-		text = bh_new(b->arena, char, (size_t)n + 1);
-	if (text)
-		vsnprintf(text, (size_t)n + 1, format, again);
-	else
-		b->lost = true;
-	va_end(again);
+	text = bh_arena_vformat(b->arena, format, args);
 	va_end(args);
+	b->lost = b->lost || !text;
 	return text ? text : "";
 }
 
