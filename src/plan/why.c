@@ -112,30 +112,39 @@ static bool target(bh_plan *plan, const bh_scene *scene, const bh_target_result 
 static bool error_of(bh_plan *plan, const bh_target_result *t, bh_err *err)
 {
 	const bh_phase *phase = &plan->phases[t->phase];
-	double background_deg, net;
+	double background_deg, density, sum, fit, all, limit;
 	bh_view_of_line v;
 
 	if (!(t->predicted_error_frac > 0))
 		return true;
 	bh_view_make(&v, &plan->signal, t->reflection);
-	net = bh_view_net_variance(&background_deg, &v);
-	return add(plan,
-		   (bh_why){ say(plan, "area error of %s %s", phase->name,
-				 phase->targets[t->target].text),
-			     say(plan, "%.3g %%", 100 * t->predicted_error_frac),
-			     "σ² = 1/N_eff + price · [P + B w_P/w_B]/N², w_B = w_P "
-			     "√(rate_B/rate_P)",
-			     say(plan,
-				 "N = %.4g net counts, background %.4g counts/s, w_P = "
-				 "%.3f°, w_B = "
-				 "%.3f°, σ²·ε = %.3g s/°, price %.3g, N_eff = %.3g",
-				 t->expected_counts, v.background_cps,
-				 v.high_deg - v.low_deg, background_deg, net,
-				 t->overlap_price, t->grains),
-			     "Poisson counts; ITC C (2004), 7.5.7; grains: Alexander, "
-			     "Klug & Kummer "
-			     "1948" },
-		   err);
+	density = t->expected_counts / (v.area_cps_deg * v.inside_frac);
+	sum = bh_view_net_variance(&background_deg, &v) / density;
+	fit = bh_view_variance(&v, density, false, BH_FIT_AREA);
+	all = bh_view_variance(&v, density, true, BH_FIT_AREA);
+	limit = bh_view_limit(&v, BH_FIT_AREA);
+	return add(
+		plan,
+		(bh_why){
+			say(plan, "area error of %s %s", phase->name,
+			    phase->targets[t->target].text),
+			say(plan, "%.3g %%", 100 * t->predicted_error_frac),
+			"σ² = 1/N_eff + V∞ + max(V_sum/V_fit, 1) (V_all − V∞); "
+			"V_sum = [P + B w_P/w_B]/N², w_B = w_P √(rate_B/rate_P); V_fit, "
+			"V_all: Cramér-Rao bounds without and with free neighbours; V∞: "
+			"V_all after endless counting",
+			say(plan,
+			    "ε = %.4g s/°, N = %.4g net counts, background %.4g "
+			    "counts/s, "
+			    "w_P = %.3f°, w_B = %.3f°, V_sum = %.3g, V_fit = %.3g, V_all "
+			    "= "
+			    "%.3g, V∞ = %.2g, N_eff = %.3g",
+			    density, t->expected_counts, v.background_cps,
+			    v.high_deg - v.low_deg, background_deg, sum, fit, all, limit,
+			    t->grains),
+			"Poisson counts; ITC C (2004), 7.5.7; grains: Alexander, Klug & "
+			"Kummer 1948" },
+		err);
 }
 
 bool bh_words_why(bh_plan *plan, const bh_scene *scene, bh_err *err)
