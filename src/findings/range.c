@@ -107,9 +107,55 @@ static bool cut(bh_findings *findings, const bh_target_result *t)
 		});
 }
 
+/* The lowest angle that any channel sees while a range runs. */
+static double lowest_seen_deg(const bh_plan *plan)
+{
+	double half_deg = plan->instrument->detector.kind == BH_DETECTOR_STRIP
+				  ? bh_detector_window_deg(plan->instrument) / 2
+				  : 0;
+	double lowest = 180;
+
+	for (size_t i = 0; i < plan->range_count; i++)
+		lowest = fmin(lowest, plan->ranges[i].travel_from_deg - half_deg);
+	return lowest;
+}
+
+/* Near 2θ = 0 the primary beam runs past the specimen into the detector. */
+static bool direct_beam(bh_findings *findings)
+{
+	const bh_plan *plan = findings->plan;
+	double divergence_deg = plan->signal.setting.divergence_deg;
+	double lowest = lowest_seen_deg(plan);
+	/* half of the opening, the rest for its height and a specimen that does not block it */
+	double limit = divergence_deg > 0 ? divergence_deg : 1;
+
+	if (lowest > limit)
+		return true;
+	return bh_findings_add(findings,
+			       &(bh_finding){
+				       .severity = BH_SEVERE,
+				       .where = bh_say(findings, "near %.2f°", lowest),
+				       .text = bh_say(findings,
+						      "The detector sees down to %.2f° "
+						      "while the plan runs: the "
+						      "primary beam, %.3g° wide, falls "
+						      "on it and can destroy it.",
+						      lowest, limit),
+				       .evidence = { { "lowest_seen", lowest, "°" },
+						     { "limit", limit, "°" } },
+				       .evidence_count = 2,
+				       .remedy = "Raise the lower limit of two_theta, or "
+						 "work with the lab's beam "
+						 "stop in place.",
+			       });
+}
+
 bool bh_find_range(bh_findings *findings)
 {
 	const bh_plan *plan = findings->plan;
+
+	if (plan->range_count && !direct_beam(findings))
+		return false;
 
 	for (size_t i = 0; i < plan->target_count; i++) {
 		const bh_target_result *t = &plan->targets[i];

@@ -12,7 +12,7 @@
 /* clang-format off */
 const bh_finding_row bh_finding_rows[] = {
 	{ "booking",      bh_find_booking,      "the booking is too short for the aims, and what it buys" },
-	{ "range",        bh_find_range,        "a target beyond the arms' reach or cut by it, and the anode that brings it in" },
+	{ "range",        bh_find_range,        "a target beyond the arms' reach or cut by it, and the anode that brings it in; the primary beam on the detector" },
 	{ "overlap",      bh_find_overlap,      "other lines within a target's window, their share and their price" },
 	{ "fluorescence", bh_find_fluorescence, "which element fluoresces, what it costs, the cures with their gain" },
 	{ "ghosts",       bh_find_ghosts,       "Kβ and tungsten lines that stand above this plan's noise" },

@@ -44,6 +44,26 @@ static void range(void **state)
 		    0.002, "SRM 640f"); /* its a is 9 ppm smaller */
 }
 
+/* A strip that starts at the beam: the primary beam falls on it. */
+static void direct_beam(void **state)
+{
+	bh_plan *plan = planned(*state, ON("strip-200", "Cu") SILICON
+				"targets = {\"1 1 1\"} }\naim \"survey\" { at = 50 }");
+	bh_scene scene = scene_of_plan(plan);
+	bh_err err = { BH_OK, 0, 0, "", "", "" };
+	bh_findings findings = { plan, &scene, &err, 0 };
+
+	assert_null(finding_of(plan, "range", "near"));
+	plan->findings = NULL;
+	plan->finding_count = 0;
+	plan->ranges[0].travel_from_deg = 1.9; /* channels reach 1.72° to both sides */
+	assert_true(bh_find_range(&findings));
+	assert_int_equal(plan->finding_count, 1);
+	assert_int_equal(plan->findings[0].severity, BH_SEVERE);
+	assert_near(plan->findings[0].evidence[0].value,
+		    1.9 - 160 * 0.075 / 200 / 2 * 57.29578, 1e-6, "lowest");
+}
+
 /* A second crystal with the very same cell lies exactly on top; with another cell beside. */
 static void overlap(void **state)
 {
@@ -303,6 +323,7 @@ int main(void)
 {
 	static const struct CMUnitTest tests[] = {
 		cmocka_unit_test_setup_teardown(range, set_up, tear_down),
+		cmocka_unit_test_setup_teardown(direct_beam, set_up, tear_down),
 		cmocka_unit_test_setup_teardown(overlap, set_up, tear_down),
 		cmocka_unit_test_setup_teardown(fluorescence, set_up, tear_down),
 		cmocka_unit_test_setup_teardown(footprint, set_up, tear_down),
