@@ -181,12 +181,13 @@ static const char *listed(bh_findings *findings, const cure *cures, size_t count
 
 	for (size_t i = 0; i < count && text; i++)
 		if (cures[i].gain > 1.1)
-			text = bh_say(findings, "%s%s%s: %.2g× less count time", text,
-				      *text ? "; " : "", cures[i].text, cures[i].gain);
+			text = bh_say(findings, "%s%s%s (%.2g×)", text,
+				      *text ? ", " : "Less count time with ",
+				      cures[i].text, cures[i].gain);
 	if (text && !*text)
 		return "No anode, level or voltage on offer is better by a tenth: a "
 		       "diffracted-beam crystal or a sharper detector would be.";
-	return text;
+	return text ? bh_say(findings, "%s.", text) : NULL;
 }
 
 /* "Cu Kα1" of a line's name. */

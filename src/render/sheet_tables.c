@@ -179,6 +179,14 @@ void bh_sheet_targets(bh_builder *b)
 			       .then = "" });
 }
 
+static bool any_target(const bh_signal *signal)
+{
+	for (size_t i = 0; i < signal->in_range_count; i++)
+		if (signal->reflections[i].target)
+			return true;
+	return false;
+}
+
 /* Rows of a short table: every target, then the strongest of each phase's own scale. */
 static bool *choose(bh_builder *b, size_t most)
 {
@@ -251,4 +259,7 @@ void bh_sheet_reflection_table(bh_builder *b, size_t most)
 					"them: beamhour reflections",
 					most, signal->in_range_count),
 				.then = "" });
+	else if (any_target(signal))
+		bh_put_item(b, s,
+			    (bh_item){ .lead = "", .text = "* asked for.", .then = "" });
 }

@@ -200,7 +200,8 @@ static void neighbours(void **state)
 		make(&m, 2, at, areas, &shape, 1);
 		bh_view_make(&line, &m.signal, 0);
 		price = bh_view_price(&line, 1e4);
-		assert_true(price >= last * (1 - 1e-9)); /* within 1.2 FWHM nearer is dearer */
+		assert_true(price >=
+			    last * (1 - 1e-9)); /* within 1.2 FWHM nearer is dearer */
 		last = price;
 	}
 	at[1] = 40;
@@ -251,12 +252,62 @@ static void floors(void **state)
 	}
 }
 
+/* A survey's exposure, judged by drawn counts: a line that brings S counts on B is found in at
+ * least 95 % of cases at 5 % false alarms (threshold B + 1.645 √B, L. A. Currie, Anal. Chem. 40
+ * (1968) 586, background well known), and not by a plan four times as long as need be. */
+static void survey(void **state)
+{
+	static const char text[] = "instrument = \"strip-250\" anodes = {\"Cu\"}\n"
+				   "two_theta = {20, 80}\n" HALITE "}\n"
+				   "aim \"survey\" { at = 3 }";
+	enum { DRAWS = 4000 };
+	bh_arena *arena = bh_arena_new();
+	bh_plan *plan = planned(arena, text), *pure;
+	bh_scene scene = scene_of_plan(plan);
+	bh_need need = { .aim = &plan->request->aims[0] };
+	bh_err err = { BH_OK, 0, 0, "", "", "" };
+	const double limits[2] = { 30, 30.001 };
+	unsigned long long seed = 7;
+	bh_profile shape;
+	double share, area, width, counts, background;
+	int found = 0, alarms = 0;
+
+	(void)state;
+	assert_true(bh_need_survey(&need, arena, &plan->signal, &scene, limits, &err));
+	/* the 10 % line of 3 wt% of a phase of ratio 1: a tenth of 3 % of corundum 1 1 3 in this
+	 * mixture, here from a plan of pure corundum */
+	pure = planned(arena, "instrument = \"strip-250\" anodes = {\"Cu\"}\n" CORUNDUM
+			      "targets = {\"1 1 3\"} }");
+	area = pure->signal.reflections[pure->targets[0].reflection].rate_cps_deg * 0.1 *
+	       0.03 * pure->signal.radiation.lines[0].mass_attenuation_cm2_g /
+	       plan->signal.radiation.lines[0].mass_attenuation_cm2_g;
+	shape = bh_profile_line(plan->instrument, NULL, 1.5405929, 30);
+	width = 1.5 * shape.fwhm_deg;
+	share = bh_profile_inside_frac(shape, width / 2);
+	counts = area * share * need.density_s_deg[0];
+	background = bh_observe_background_cps(&plan->signal, 30) * width *
+		     need.density_s_deg[0];
+	for (int i = 0; i < DRAWS; i++) {
+		double limit = background + 1.645 * sqrt(background);
+
+		found += poisson(counts + background, &seed) > limit;
+		alarms += poisson(background, &seed) > limit;
+	}
+	assert_true(found >= 0.95 * DRAWS);
+	assert_true(alarms < 0.07 * DRAWS);
+	/* the closed form: S² = 3.29² (S + B) */
+	assert_ratio(counts * counts, 3.29 * 3.29 * (counts + background), 0.002,
+		     "survey");
+	bh_arena_free(arena);
+}
+
 int main(void)
 {
 	static const struct CMUnitTest tests[] = {
 		cmocka_unit_test(position),   cmocka_unit_test(area),
 		cmocka_unit_test(split),      cmocka_unit_test(drawn_counts),
 		cmocka_unit_test(neighbours), cmocka_unit_test(floors),
+		cmocka_unit_test(survey),
 	};
 
 	return cmocka_run_group_tests_name("line view", tests, NULL, NULL);
