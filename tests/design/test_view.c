@@ -296,7 +296,7 @@ static void survey(void **state)
 	assert_true(found >= 0.95 * DRAWS);
 	assert_true(alarms < 0.07 * DRAWS);
 	/* the closed form: S² = 3.29² (S + B) */
-	assert_ratio(counts * counts, 3.29 * 3.29 * (counts + background), 0.002,
+	assert_ratio(counts * counts, 3.29 * 3.29 * (counts + background), 0.005,
 		     "survey");
 	bh_arena_free(arena);
 }
