@@ -18,7 +18,7 @@ static void print_help(void)
 
 		snprintf(head, sizeof head, "%s %s", bh_commands[i].name,
 			 bh_commands[i].arguments);
-		printf("  %-26s %s\n", head, bh_commands[i].help);
+		bh_options_print_row(head, bh_commands[i].help);
 	}
 	printf("\nREQUEST is a file, or - for standard input.\n\noptions:\n");
 	bh_options_print();

@@ -13,6 +13,7 @@ enum {
 	OPT_INSTRUMENT,
 	OPT_WITHIN,
 	OPT_TWO_THETA,
+	OPT_WITHOUT,
 	OPT_WHY,
 	OPT_QUIET,
 	OPT_COLOR,
@@ -33,6 +34,7 @@ static const row rows[] = {
 	{ OPT_INSTRUMENT, "instrument", "NAME",     "a preset or an instrument file, instead of the request's" },
 	{ OPT_WITHIN,     "within",     "DURATION", "the longest booking, instead of the request's: \"90 min\", \"2 h\"" },
 	{ OPT_TWO_THETA,  "two-theta",  "LO,HI",    "reflections: only between these angles, degrees" },
+	{ OPT_WITHOUT,    "without",    "WHAT",     "reflections: leave out anomalous, charges, anisotropy (any of them, by commas)" },
 	{ OPT_WHY,        "why",        NULL,       "say where each number comes from: equation, inputs, source" },
 	{ OPT_QUIET,      "quiet",      NULL,       "nothing to the terminal but errors and what -o - asks for" },
 	{ OPT_COLOR,      "color",      "WHEN",     "auto, always or never; NO_COLOR is honoured" },
@@ -42,6 +44,27 @@ static const row rows[] = {
 /* clang-format on */
 enum { ROWS = sizeof rows / sizeof *rows };
 
+void bh_options_print_row(const char *head, const char *help)
+{
+	enum { INDENT = 29, WIDTH = 80 };
+	int column = printf("  %-26s ", head);
+
+	while (*help) {
+		int n = (int)strcspn(help, " ");
+
+		if (column + n > WIDTH && column > INDENT) {
+			printf("\n%*s", INDENT, "");
+			column = INDENT;
+		}
+		column += printf("%.*s", n, help);
+		help += n;
+		if (*help == ' ' && column < WIDTH)
+			column += printf(" ");
+		help += *help == ' ';
+	}
+	printf("\n");
+}
+
 void bh_options_print(void)
 {
 	for (int i = 0; i < ROWS; i++) {
@@ -50,7 +73,7 @@ void bh_options_print(void)
 		snprintf(head, sizeof head, "%s--%s%s%s",
 			 rows[i].id == 'o' ? "-o, " : "    ", rows[i].name,
 			 rows[i].value ? " " : "", rows[i].value ? rows[i].value : "");
-		printf("  %-26s %s\n", head, rows[i].help);
+		bh_options_print_row(head, rows[i].help);
 	}
 }
 
@@ -74,6 +97,29 @@ static bool color(bh_options *options, const char *text, bh_err *err)
 		}
 	return bh_fail(err, BH_BAD_INPUT, "--color %s\nallowed: auto, always, never",
 		       text);
+}
+
+/* What of a structure factor to leave out. Atoms are neutral and isotropic here, so leaving
+ * charges or anisotropy out changes nothing. */
+static bool without(bh_options *options, const char *text, bh_err *err)
+{
+	static const char *const words[] = { "anomalous", "charges", "anisotropy" };
+
+	for (const char *s = text; *s;) {
+		size_t n = strcspn(s, ","), i = 0;
+
+		while (i < 3 && (strlen(words[i]) != n || memcmp(words[i], s, n) != 0))
+			i++;
+		if (i == 3)
+			return bh_fail(
+				err, BH_BAD_INPUT,
+				"--without %s\nallowed, by commas: anomalous, charges, "
+				"anisotropy",
+				text);
+		options->without_anomalous = options->without_anomalous || i == 0;
+		s += n + (s[n] == ',');
+	}
+	return true;
 }
 
 static bool take(bh_options *options, int id, const char *value, bh_err *err)
@@ -107,6 +153,8 @@ static bool take(bh_options *options, int id, const char *value, bh_err *err)
 			       "--two-theta %s\nallowed: two angles, low,high, within 0 "
 			       "to 180",
 			       value);
+	case OPT_WITHOUT:
+		return without(options, value, err);
 	case OPT_COLOR:
 		return color(options, value, err);
 	case OPT_WHY:

@@ -23,6 +23,7 @@ typedef struct {
 	double within_s;	 /* 0: not given         */
 	double two_theta_deg[2]; /* low < high, else not given */
 	bool two_theta_given;
+	bool without_anomalous;
 	bool why, quiet, help, version;
 	bh_color color;
 	const char *preset_dirs[4];
@@ -31,6 +32,9 @@ typedef struct {
 
 /* Read argv. false: *err says what is wrong, with the nearest word. */
 bool bh_options_read(bh_options *options, int argc, char **argv, bh_err *err);
+
+/* One row of a help list: a head, and its help broken to 80 columns. */
+void bh_options_print_row(const char *head, const char *help);
 
 /* The list of options, for --help. */
 void bh_options_print(void);

@@ -57,7 +57,8 @@ typedef struct {
 	bh_aim *aims;
 	size_t aim_count;
 	bh_booking booking;
-	double share_factor; /* how unsure minor shares are, times or divided by */
+	double share_factor;	/* how unsure minor shares are, times or divided by */
+	bool without_anomalous; /* f′ = f″ = 0, for comparison with tables */
 } bh_request;
 
 #endif

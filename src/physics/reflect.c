@@ -79,7 +79,8 @@ static bool planes_of(bh_reflection **list, size_t *count, bh_arena *arena, size
 }
 
 static bool fill_f2(bh_reflection *list, size_t count, bh_arena *arena,
-		    const bh_phase *phase, const bh_radiation *radiation, bh_err *err)
+		    const bh_phase *phase, const bh_radiation *radiation,
+		    bh_without without, bh_err *err)
 {
 	double energy_keV[BH_MAX_LINES], *d_A = bh_new(arena, double, count);
 	double *f2 = bh_new(arena, double, count * radiation->count);
@@ -97,7 +98,7 @@ static bool fill_f2(bh_reflection *list, size_t count, bh_arena *arena,
 	if (!bh_structure_f2_table(f2, arena, phase,
 				   &(bh_f2_query){ (const int(*)[3])h, d_A, count,
 						   energy_keV, radiation->count,
-						   (bh_without){ false } },
+						   without },
 				   err))
 		return false;
 	if (!bh_cell_reciprocal(&reciprocal, &phase->cell))
@@ -313,7 +314,9 @@ bool bh_reflect(bh_signal *signal, bh_arena *arena, const bh_scene *scene, bh_er
 		bool done = planes_of(&list, &count, arena, i, phase, least_d_A, err);
 
 		if (done && phase->kind == BH_PHASE_ATOMS)
-			done = fill_f2(list, count, arena, phase, radiation, err);
+			done = fill_f2(list, count, arena, phase, radiation,
+				       (bh_without){ scene->request->without_anomalous },
+				       err);
 		else if (done && phase->kind == BH_PHASE_LIST &&
 			 phase->corundum_ratio > 0)
 			done = fill_list(list, phase, arena, err);

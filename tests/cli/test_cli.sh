@@ -70,6 +70,13 @@ verdict "reflections between two angles" "$(
 	awk -F, 'NR > 1 && ($8 < 30 || $8 > 40)' "$dir/out"
 	[ "$(wc -l < "$dir/out")" -gt 2 ] || echo "none"
 	expect 2 "$bh" reflections $good --two-theta 40,30)"
+verdict "without dispersion |F|² is that of f0 alone" "$(
+	# corundum 0 1 2 by hand: see the published test; with dispersion it is larger
+	expect 0 "$bh" reflections examples/harbour-steel.conf --format csv --without anomalous
+	cp "$dir/out" "$dir/f0"
+	expect 0 "$bh" reflections examples/harbour-steel.conf --format csv
+	paste -d, "$dir/f0" "$dir/out" | awk -F, 'NR > 1 && $1 == "hematite" && $7 == $19 { print }'
+	expect 2 "$bh" reflections $good --without color)"
 verdict "a request from standard input" "$(
 	"$bh" plan - < $good > "$dir/out" 2> "$dir/err" || echo "status $?"
 	grep -q "Ranges" "$dir/out" || echo "no plan")"
