@@ -6,22 +6,23 @@
 #include "physics/bragg.h"
 #include "physics/detector.h"
 
-/* The offered anodes whose Kα1 brings a distance within the limits. */
+/* The machine's other anodes whose Kα1 brings a distance within the limits. */
 static const char *anodes_for(bh_findings *findings, double d_A)
 {
-	const bh_request *request = findings->plan->request;
-	const bh_tube *used = findings->plan->signal.setting.tube;
+	const bh_plan *plan = findings->plan;
+	const bh_request *request = plan->request;
 	const char *list = "";
 
-	for (size_t i = 0; i < request->anode_count && list; i++) {
+	for (size_t i = 0; i < plan->instrument->tube_count && list; i++) {
+		const bh_tube *tube = &plan->instrument->tubes[i];
 		double at_deg;
 
-		if (request->anodes[i] != used->anode &&
-		    bh_bragg_two_theta_deg(&at_deg, d_A, request->anodes[i]->ka1_A) &&
+		if (tube != plan->signal.setting.tube &&
+		    bh_bragg_two_theta_deg(&at_deg, d_A, tube->anode->ka1_A) &&
 		    at_deg >= request->two_theta_min_deg &&
 		    at_deg <= request->two_theta_max_deg)
 			list = bh_say(findings, "%s%s%s (%.2f°)", list, *list ? ", " : "",
-				      request->anodes[i]->symbol, at_deg);
+				      tube->anode->symbol, at_deg);
 	}
 	return list;
 }

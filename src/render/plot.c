@@ -148,7 +148,8 @@ void bh_plot(bh_text *text, const bh_plan *plan, size_t columns)
 	for (size_t i = 0; i < a.width; i++)
 		most = fmax(most, top_cps[i]);
 	if (plan->signal.rates_known && most > 0) {
-		bh_text_add(text, "  counts/s in one aperture, √ scale from the background\n");
+		bh_text_add(text,
+			    "  counts/s in one aperture, √ scale from the background\n");
 		bars(text, &a, top_cps);
 	}
 	numbers(text, &a);

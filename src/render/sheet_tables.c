@@ -79,6 +79,18 @@ void bh_sheet_ranges(bh_builder *b)
 				.then = "" });
 }
 
+/* Why nothing can be said of an aim. */
+static const char *unknown_word(const bh_plan *plan, const bh_aim_result *a)
+{
+	for (size_t i = 0; i < plan->target_count; i++)
+		if (a->aim->kind == BH_AIM_LINE &&
+		    plan->targets[i].phase == a->aim->phase &&
+		    plan->targets[i].target == a->aim->target &&
+		    plan->targets[i].reflection == SIZE_MAX)
+			return "no angle";
+	return "not known";
+}
+
 void bh_sheet_aims(bh_builder *b)
 {
 	static const bh_column columns[] = {
@@ -103,7 +115,7 @@ void bh_sheet_aims(bh_builder *b)
 			a->computed ? bh_put_digits(b, a->predicted, 2) : "–",
 			floor ? bh_put_digits(b, a->floor, 2) : "–",
 			a->unit,
-			!a->computed   ? "not known"
+			!a->computed   ? unknown_word(plan, a)
 			: a->met       ? "yes"
 			: a->reachable ? "no"
 				       : "no: floor",
@@ -149,7 +161,7 @@ void bh_sheet_targets(bh_builder *b)
 		bool counted = t->expected_counts > 0;
 		const char *cells[COUNT(columns)] = {
 			bh_put(b, "%s %s", phase->name, phase->targets[t->target].text),
-			seen ? bh_put_fixed(b, t->ka1_deg, 3) : "out of range",
+			seen ? bh_put_fixed(b, t->ka1_deg, 3) : "no angle",
 			seen ? bh_put_fixed(b, t->fwhm_deg, 3) : "–",
 			rate ? bh_put_digits(b, t->top_cps, 3) : "–",
 			rate ? bh_put_digits(b, t->background_cps, 3) : "–",

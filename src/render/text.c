@@ -31,6 +31,18 @@ static void plain(const page *p)
 		bh_text_add(p->to, "\033[0m");
 }
 
+static bool is_digit(char c)
+{
+	return c >= '0' && c <= '9';
+}
+
+/* Not between digits: "1 0 4", "12 300" stay together. */
+static bool may_break(const char *text, size_t blank)
+{
+	return blank == 0 || !is_digit(text[blank - 1]) ||
+	       !(is_digit(text[blank + 1]) || text[blank + 1] == '-');
+}
+
 /* Bytes of text that fit into a width, broken at a blank where there is one. */
 static size_t fitting(const char *text, size_t width)
 {
@@ -48,7 +60,7 @@ static size_t fitting(const char *text, size_t width)
 		if (used > width)
 			return last_blank ? last_blank : i ? i : next;
 		i = next;
-		if (text[i] == ' ' || text[i] == '\0')
+		if (text[i] == '\0' || (text[i] == ' ' && may_break(text, i)))
 			last_blank = i;
 	}
 	return i;
