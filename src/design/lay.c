@@ -52,6 +52,9 @@ bool bh_work_lay(bh_work *w, bh_range *ranges, size_t *count, size_t skip)
 	double everywhere = survey_density(w, skip);
 	bh_span *spans = bh_new(plan->arena, bh_span, plan->request->aim_count);
 	size_t n = 0, most = plan->request->booking.most_ranges;
+	bh_view usual = plan->instrument->detector.kind == BH_DETECTOR_STRIP
+				? BH_VIEW_SWEEPING
+				: BH_VIEW_STILL;
 
 	*count = 0;
 	if (!spans)
@@ -74,7 +77,7 @@ bool bh_work_lay(bh_work *w, bh_range *ranges, size_t *count, size_t skip)
 				need->density_s_deg[view] * w->scale - everywhere;
 		if (!need->reachable[BH_VIEW_STILL] && need->reachable[BH_VIEW_SWEEPING])
 			span->density_s_deg[BH_VIEW_STILL] = HUGE_VAL;
-		n += span->density_s_deg[BH_VIEW_SWEEPING] > 0;
+		n += span->density_s_deg[usual] > 0;
 	}
 	if (!bh_ranges_join(spans, &n, most > *count ? most - *count : 1, &w->machine,
 			    plan->arena, w->err))

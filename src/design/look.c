@@ -148,6 +148,10 @@ bool bh_work_needs(bh_work *w)
 			continue;
 		bh_work_grains(grains, w, need->target);
 		bh_need_line(need, &w->lines[need->target], grains);
+		/* a line that the limits cut through cannot be measured */
+		if (w->lines[need->target].low_deg < w->limits_deg[0] ||
+		    w->lines[need->target].high_deg > w->limits_deg[1])
+			need->computed = false;
 	}
 	return true;
 }

@@ -3,6 +3,7 @@
 #include <math.h>
 #include <stdint.h>
 
+#include "design/ranges.h"
 #include "physics/bragg.h"
 #include "physics/detector.h"
 
@@ -69,35 +70,34 @@ static bool out_of_reach(bh_findings *findings, const bh_target_result *t)
 		});
 }
 
-/* A strip exposes fully only half its window inside the arms' limits. */
+/* A strip exposes fully only half its window inside the arms' limits: a line there loses its
+ * background on one side, or is itself cut through. */
 static bool cut(bh_findings *findings, const bh_target_result *t)
 {
 	const bh_plan *plan = findings->plan;
-	const bh_instrument *instrument = plan->instrument;
-	double half_deg = instrument->detector.kind == BH_DETECTOR_STRIP
-				  ? bh_detector_window_deg(instrument) / 2
-				  : 0;
-	double low = fmax(instrument->two_theta_min_deg + half_deg,
-			  plan->request->two_theta_min_deg);
-	double high = fmin(instrument->two_theta_max_deg - half_deg,
-			   plan->request->two_theta_max_deg);
-	double width = fmax(4 * t->fwhm_deg, 0.4);
+	bh_machine machine = { plan->instrument, 0, plan->request->two_theta_min_deg,
+			       plan->request->two_theta_max_deg };
+	double width = fmax(4 * t->fwhm_deg, 0.4), core = 1.5 * t->fwhm_deg, low, high;
 	double last = t->ka2_deg > 0 ? t->ka2_deg : t->ka1_deg;
+	bool through;
 
+	bh_ranges_limits(&low, &high, &machine);
 	if (t->ka1_deg - width >= low && last + width <= high)
 		return true;
+	through = t->ka1_deg - core < low || last + core > high;
 	return bh_findings_add(
 		findings,
 		&(bh_finding){
-			.severity = BH_CAUTION,
+			.severity = through && bh_findings_wanted(plan, t) ? BH_SEVERE
+									   : BH_CAUTION,
 			.where = bh_findings_target(findings, t),
-			.text = bh_say(findings,
-				       "Its window %.2f to %.2f° runs beyond %.2f to "
-				       "%.2f°, where "
-				       "every point can be exposed fully: one side has "
-				       "little or no "
-				       "background.",
-				       t->ka1_deg - width, last + width, low, high),
+			.text = bh_say(
+				findings,
+				"Its window %.2f to %.2f° runs beyond %.2f to %.2f°, "
+				"where every point can be exposed fully: %s.",
+				t->ka1_deg - width, last + width, low, high,
+				through ? "the line itself is cut"
+					: "one side has little or no background"),
 			.evidence = { { "two_theta", t->ka1_deg, "°" },
 				      { "lowest_full", low, "°" },
 				      { "highest_full", high, "°" } },

@@ -44,6 +44,41 @@ static void range(void **state)
 		    0.002, "SRM 640f"); /* its a is 9 ppm smaller */
 }
 
+/* The limits cut through a line (Si 1 1 1 at 28.44°, NIST SRM 640f): no range, no promise. */
+static void cut_through(void **state)
+{
+	static const struct {
+		const char *limits;
+		bool found, computed;
+		bh_severity severity;
+	} rows[] = {
+		{ "two_theta = {20, 28.45}\n", true, false, BH_SEVERE },
+		{ "two_theta = {20, 28.75}\n", true, true, BH_CAUTION },
+		{ "two_theta = {20, 40}\n", false, true, BH_NOTE },
+	};
+
+	for (size_t i = 0; i < 3; i++) {
+		char text[1000];
+		const bh_plan *plan;
+		const bh_finding *f;
+
+		snprintf(
+			text, sizeof text, "%s%s%s", ON("slit-250-foil", "Cu"),
+			rows[i].limits,
+			SILICON
+			"targets = {\"1 1 1\"} }\nspecimen { grain_um = 2 spin = true }\n"
+			"aim \"line\" { phase = \"silicon\" plane = \"1 1 1\" "
+			"area_error = 3 }");
+		plan = planned(*state, text);
+		f = finding_of(plan, "range", "silicon 1 1 1");
+		assert_int_equal(f != NULL, rows[i].found);
+		assert_int_equal(plan->aims[0].computed, rows[i].computed);
+		assert_int_equal(plan->range_count, rows[i].computed);
+		if (f)
+			assert_int_equal(f->severity, rows[i].severity);
+	}
+}
+
 /* A strip that starts at the beam: the primary beam falls on it. */
 static void direct_beam(void **state)
 {
@@ -323,6 +358,7 @@ int main(void)
 {
 	static const struct CMUnitTest tests[] = {
 		cmocka_unit_test_setup_teardown(range, set_up, tear_down),
+		cmocka_unit_test_setup_teardown(cut_through, set_up, tear_down),
 		cmocka_unit_test_setup_teardown(direct_beam, set_up, tear_down),
 		cmocka_unit_test_setup_teardown(overlap, set_up, tear_down),
 		cmocka_unit_test_setup_teardown(fluorescence, set_up, tear_down),
