@@ -12,7 +12,7 @@ best() {
 	for _ in 1 2 3 4 5; do
 		{ time "$@" > /dev/null 2>&1; } 2>&1
 	done | awk '{ t = ($1 + $2) * 1000; if (NR == 1 || t < best) best = t }
-		END { printf "%.1f", best > 0.1 ? best : 0.1 }'
+		END { printf "%.1f", (best > 0.1 ? best : 0.1) }'
 }
 
 start=$(best "$beamhour" --version)
