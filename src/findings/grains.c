@@ -22,6 +22,14 @@ static double wanted_frac(const bh_plan *plan, const bh_target_result *t, bool *
 	return 0;
 }
 
+/* Diameter of what diffracts as one, µm. */
+static double diameter_um(const bh_plan *plan, const bh_target_result *t)
+{
+	double size_nm = plan->phases[t->phase].size_nm;
+
+	return size_nm > 0 ? size_nm / 1000 : plan->request->specimen.grain_um;
+}
+
 /* What spinning multiplies N_eff by, and the grain size that meets the wanted error. */
 static const char *remedy(bh_findings *findings, const bh_target_result *t, double wanted,
 			  double *gain)
@@ -33,7 +41,7 @@ static const char *remedy(bh_findings *findings, const bh_target_result *t, doub
 	bh_grain_line line = { phase, 1, t->ka1_deg, BH_VIEW_STILL, false };
 	double still = bh_grains_effective(&plan->signal, findings->scene, &line), spun;
 	/* half the wanted error: the rest is left to counting */
-	double fine_um = specimen->grain_um * cbrt(t->grains * wanted * wanted / 4);
+	double fine_um = diameter_um(plan, t) * cbrt(t->grains * wanted * wanted / 4);
 
 	line.spin = true;
 	spun = bh_grains_effective(&plan->signal, findings->scene, &line);
@@ -65,7 +73,7 @@ static bool report(bh_findings *findings, const bh_target_result *t, double want
 				"orientation alone makes the area uncertain by %.2g %%, "
 				"%s the "
 				"%.2g %% asked for.%s",
-				t->grains, findings->plan->request->specimen.grain_um,
+				t->grains, diameter_um(findings->plan, t),
 				100 * t->grain_error_frac,
 				t->grain_error_frac > wanted ? "more than"
 							     : "a large part of",
