@@ -31,7 +31,7 @@ CFLAGS ?= -O2 -g
 override CFLAGS += -std=c11 -D_POSIX_C_SOURCE=200809L $(WARN) $(if $(WERROR),-Werror) \
         $(if $(SAN),-fsanitize=address$(,)undefined -fno-sanitize-recover=all -fno-omit-frame-pointer) \
         -Isrc -Iinclude -Itests -I. -DBH_VERSION='"$(VERSION)"' -DBH_SHARE='"$(PREFIX)/share/beamhour"' \
-        -MMD -MP $(patsubst -I%,-isystem %,$(shell pkg-config --cflags $(LIBS) 2>/dev/null))
+        -MMD -MP -fopenmp $(patsubst -I%,-isystem %,$(shell pkg-config --cflags $(LIBS) 2>/dev/null))
 LDLIBS := $(shell pkg-config --libs $(LIBS) 2>/dev/null) -lm
 
 OBJ     := $(patsubst %.c,$(BUILD)/%.o,$(wildcard src/*/*.c))

@@ -30,7 +30,7 @@ static int listed(bh_arena *arena, const bh_options *options)
 
 	if (status != BH_EXIT_DONE)
 		return status;
-	request->without_anomalous = options->without_anomalous;
+	request->without = options->without;
 	if (options->two_theta_given) {
 		request->two_theta_min_deg =
 			fmax(request->two_theta_min_deg, options->two_theta_deg[0]);

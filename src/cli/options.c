@@ -99,11 +99,13 @@ static bool color(bh_options *options, const char *text, bh_err *err)
 		       text);
 }
 
-/* What of a structure factor to leave out. Atoms are neutral and isotropic here, so leaving
- * charges or anisotropy out changes nothing. */
+/* What of a structure factor to leave out. */
 static bool without(bh_options *options, const char *text, bh_err *err)
 {
 	static const char *const words[] = { "anomalous", "charges", "anisotropy" };
+	bool *const leave_out[] = { &options->without.anomalous,
+				    &options->without.charges,
+				    &options->without.anisotropy };
 
 	for (const char *s = text; *s;) {
 		size_t n = strcspn(s, ","), i = 0;
@@ -116,7 +118,7 @@ static bool without(bh_options *options, const char *text, bh_err *err)
 				"--without %s\nallowed, by commas: anomalous, charges, "
 				"anisotropy",
 				text);
-		options->without_anomalous = options->without_anomalous || i == 0;
+		*leave_out[i] = true;
 		s += n + (s[n] == ',');
 	}
 	return true;

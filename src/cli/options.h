@@ -23,7 +23,7 @@ typedef struct {
 	double within_s;	 /* 0: not given         */
 	double two_theta_deg[2]; /* low < high, else not given */
 	bool two_theta_given;
-	bool without_anomalous;
+	bh_without without;
 	bool why, quiet, help, version;
 	bh_color color;
 	const char *preset_dirs[4];

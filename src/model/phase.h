@@ -6,6 +6,7 @@
 
 #include "base/err.h"
 #include "base/mat3.h"
+#include "model/finding.h"
 
 typedef struct {
 	double a_A, b_A, c_A;
@@ -34,13 +35,26 @@ typedef struct {
 typedef struct {
 	char label[32];
 	int z;		  /* atomic number                           */
+	int charge;	  /* of the ion, 0: neutral or not given     */
 	double at[3];	  /* fractional                              */
+	double reach_A;	  /* images nearer than this are one atom; 0: 0.06 */
 	double occupancy; /* (0, 1]                                  */
 	double b_iso_A2;  /* displacement parameter B                */
 	bool b_known;	  /* false: the default stands in b_iso_A2   */
+	bool tensor_known; /* beta holds; it is used instead of B     */
+	double beta[6];	  /* β11 β22 β33 β12 β13 β23, T = exp(−Σ β_ij h_i h_j) */
+	char assembly[8], alternative[8]; /* disorder: of one assembly, one alternative
+					     stands in a cell at a time; "" : none */
 	int multiplicity; /* images in the cell; set when resolved   */
 	bh_place place;
 } bh_site;
+
+/* What a structure file says that a user must know of: not an error, the phase stands. */
+typedef struct {
+	bh_severity severity;
+	const char *text, *remedy; /* remedy: what to do; "" */
+	bh_place place;
+} bh_remark;
 
 /* Elements by mass. */
 typedef struct {
@@ -58,6 +72,13 @@ typedef enum {
 	BH_PHASE_POSITIONS, /* cell and group only: positions                */
 	BH_PHASE_LIST	    /* a list of d; rates when a corundum ratio says */
 } bh_phase_kind;
+
+/* What of a structure factor to leave out, for comparison with tables. */
+typedef struct {
+	bool anomalous;	 /* f' = f'' = 0                                     */
+	bool charges;	 /* neutral atoms                                    */
+	bool anisotropy; /* the isotropic B that a site states, else 0       */
+} bh_without;
 
 typedef struct {
 	char text[40]; /* as written                                   */
@@ -88,6 +109,10 @@ typedef struct {
 	int march_axis[3];
 	bh_target *targets;
 	size_t target_count;
+
+	char source[128]; /* structure file and block; "" : written in the request */
+	bh_remark *remarks;
+	size_t remark_count;
 
 	/* resolved at reading */
 	bh_composition composition;

@@ -58,7 +58,7 @@ typedef struct {
 	size_t aim_count;
 	bh_booking booking;
 	double share_factor;	/* how unsure minor shares are, times or divided by */
-	bool without_anomalous; /* f′ = f″ = 0, for comparison with tables */
+	bh_without without;	/* for comparison with tables */
 } bh_request;
 
 #endif

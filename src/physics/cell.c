@@ -1,6 +1,7 @@
 #include "physics/cell.h"
 
 #include <math.h>
+#include <string.h>
 
 #include "base/units.h"
 
@@ -37,6 +38,47 @@ double bh_cell_volume_A3(const bh_cell *cell)
 	double edges = cell->a_A * cell->b_A * cell->c_A;
 
 	return square > 1e-12 * edges * edges ? sqrt(square) : 0;
+}
+
+void bh_cell_axes(double axes[3][3], const bh_cell *cell)
+{
+	bh_mat3 g = bh_cell_metric(cell);
+
+	/* the triangular factor of the metric */
+	memset(axes, 0, 9 * sizeof(double));
+	axes[0][0] = sqrt(g.at[0][0]);
+	axes[0][1] = g.at[0][1] / axes[0][0];
+	axes[0][2] = g.at[0][2] / axes[0][0];
+	axes[1][1] = sqrt(fmax(0, g.at[1][1] - axes[0][1] * axes[0][1]));
+	axes[1][2] = axes[1][1] > 0
+			     ? (g.at[1][2] - axes[0][1] * axes[0][2]) / axes[1][1]
+			     : 0;
+	axes[2][2] = sqrt(fmax(0, g.at[2][2] - axes[0][2] * axes[0][2] -
+					  axes[1][2] * axes[1][2]));
+}
+
+/* Exact where the cosine is 0 or −1/2. */
+static double angle_deg(double cosine)
+{
+	if (fabs(cosine) < 1e-15)
+		return 90;
+	if (fabs(cosine + 0.5) < 1e-15)
+		return 120;
+	return bh_deg(acos(cosine));
+}
+
+void bh_cell_of_metric(bh_cell *cell, const bh_mat3 *metric)
+{
+	double edge[3];
+
+	for (int i = 0; i < 3; i++)
+		edge[i] = sqrt(metric->at[i][i]);
+	*cell = (bh_cell){ edge[0],
+			   edge[1],
+			   edge[2],
+			   angle_deg(metric->at[1][2] / (edge[1] * edge[2])),
+			   angle_deg(metric->at[0][2] / (edge[0] * edge[2])),
+			   angle_deg(metric->at[0][1] / (edge[0] * edge[1])) };
 }
 
 static double form(const bh_mat3 *m, const int h[3], const int k[3])

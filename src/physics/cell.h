@@ -17,6 +17,12 @@ bool bh_cell_reciprocal(bh_mat3 *reciprocal, const bh_cell *cell);
 /* Volume, Å³; 0 when the angles close no cell. */
 double bh_cell_volume_A3(const bh_cell *cell);
 
+/* Axes as columns, Å: a along x, b in the xy plane. */
+void bh_cell_axes(double axes[3][3], const bh_cell *cell);
+
+/* Edges and angles of a metric tensor. */
+void bh_cell_of_metric(bh_cell *cell, const bh_mat3 *metric);
+
 /* Interplanar distance, Å, of hkl ≠ 0 0 0. */
 double bh_cell_d_A(const bh_mat3 *reciprocal, const int h[3]);
 

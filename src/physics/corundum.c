@@ -2,6 +2,7 @@
 
 #include "base/units.h"
 #include "data/anodes.h"
+#include "physics/amplitude.h"
 #include "physics/bragg.h"
 #include "physics/cell.h"
 #include "physics/geometry.h"
@@ -37,7 +38,7 @@ bool bh_corundum_strength(double *strength, double *lorentz_polarization, bh_are
 		return false;
 	d_A = bh_cell_d_A(&reciprocal, h);
 	bh_bragg_two_theta_deg(&two_theta_deg, d_A, wavelength_A);
-	f2 = bh_structure_f2(&phase, h, d_A, bh_energy_keV(wavelength_A),
+	f2 = bh_amplitude_f2(&phase, h, d_A, bh_energy_keV(wavelength_A),
 			     (bh_without){ false });
 	*strength = (double)bh_hkl_equivalents(&phase.group, h, planes) * f2 /
 		    (phase.volume_A3 * phase.volume_A3 * phase.density_g_cm3);

@@ -129,77 +129,125 @@ static void sort(bh_hkl *planes, size_t count)
 		}
 }
 
-/* A rotation and the planes it turns; rotations of a centred group stand there once. */
+/* A rotation of the group with its opposite: which planes they turn into which, and the shifts
+ * of the operations that have them. */
 typedef struct {
 	int by[3][3];
-} rotation;
+	double shift[2][3]; /* of the rotation, of its opposite */
+	bool has[2];
+} turning;
 
 typedef struct {
 	bh_arena *arena;
 	const bh_space_group *group;
-	rotation rotations[BH_MAX_EQUIVALENTS];
-	size_t rotation_count;
+	turning turnings[BH_MAX_EQUIVALENTS];
+	size_t turning_count;
+	double lattice[BH_MAX_EQUIVALENTS][3]; /* vectors besides whole cells */
+	size_t lattice_count;
 	bh_mat3 reciprocal;
-	double most_inv_A2;
+	double most_inv_A2; /* 1/d² of the smallest d */
 	bh_hkl *planes;
 	size_t count, capacity;
 } collection;
 
-static void collect_rotations(collection *c)
-{
-	for (size_t i = 0; i < c->group->op_count; i++) {
-		bool seen = false;
-
-		for (size_t k = 0; k < c->rotation_count && !seen; k++)
-			seen = memcmp(c->rotations[k].by, c->group->ops[i].rotation,
-				      sizeof c->rotations[k].by) == 0;
-		if (!seen && c->rotation_count < BH_MAX_EQUIVALENTS)
-			memcpy(c->rotations[c->rotation_count++].by,
-			       c->group->ops[i].rotation, sizeof c->rotations[0].by);
-	}
-}
-
-static void turn_by(int k[3], const int h[3], const rotation *r)
+static bool is_turning(const turning *t, const bh_symop *op, int sign)
 {
 	for (int j = 0; j < 3; j++)
-		k[j] = h[0] * r->by[0][j] + h[1] * r->by[1][j] + h[2] * r->by[2][j];
-}
-
-/* Whether h is the printed one of its equivalents: most planes fail at the first few. */
-static bool is_standard(const collection *c, const int h[3])
-{
-	for (size_t i = 0; i < c->rotation_count; i++) {
-		int k[3], opposite[3];
-
-		turn_by(k, h, &c->rotations[i]);
-		for (int j = 0; j < 3; j++)
-			opposite[j] = -k[j];
-		if (comes_first(k, h) || comes_first(opposite, h))
-			return false;
-	}
+		for (int k = 0; k < 3; k++)
+			if (op->rotation[j][k] != sign * t->by[j][k])
+				return false;
 	return true;
 }
 
-/* Orbit and stabiliser: all rotations and their opposites over those that leave h. */
-static int multiplicity(const collection *c, const int h[3])
+/* Sort an operation in: a lattice vector, a known rotation or its opposite, or a new one. */
+static void sort_in(collection *c, const bh_symop *op)
 {
-	const int opposite[3] = { -h[0], -h[1], -h[2] };
+	turning *t;
+
+	for (size_t i = 0; i < c->turning_count; i++)
+		for (int side = 0; side < 2; side++) {
+			t = &c->turnings[i];
+			if (!is_turning(t, op, side ? -1 : 1))
+				continue;
+			if (t->has[side] && i == 0 && side == 0)
+				memcpy(c->lattice[c->lattice_count++], op->shift,
+				       sizeof op->shift);
+			else if (!t->has[side])
+				memcpy(t->shift[side], op->shift, sizeof op->shift);
+			t->has[side] = true;
+			return;
+		}
+	t = &c->turnings[c->turning_count++];
+	memcpy(t->by, op->rotation, sizeof t->by);
+	memcpy(t->shift[0], op->shift, sizeof op->shift);
+	t->has[0] = true;
+}
+
+static void collect_turnings(collection *c)
+{
+	static const bh_symop one = { { { 1, 0, 0 }, { 0, 1, 0 }, { 0, 0, 1 } },
+				      { 0 } };
+
+	sort_in(c, &one);
+	for (size_t i = 0; i < c->group->op_count; i++) {
+		const bh_symop *op = &c->group->ops[i];
+		bool identity = is_turning(&c->turnings[0], op, 1);
+
+		/* the identity itself is in already */
+		if (!identity || fabs(op->shift[0]) + fabs(op->shift[1]) +
+						 fabs(op->shift[2]) >
+					 1e-9)
+			sort_in(c, op);
+	}
+}
+
+static bool is_whole(const double shift[3], const int h[3])
+{
+	double phase = h[0] * shift[0] + h[1] * shift[1] + h[2] * shift[2];
+
+	return fabs(phase - round(phase)) < 1e-3;
+}
+
+/* Whether h is the printed one of its equivalents and is not extinguished; how many there
+ * are: all rotations over those that leave h, up to sign. */
+static bool is_listed(const collection *c, const int h[3], int *multiplicity)
+{
+	const int friedel[3] = { -h[0], -h[1], -h[2] };
 	int staying = 0;
 
-	for (size_t i = 0; i < c->rotation_count; i++) {
-		int k[3];
+	if (comes_first(friedel, h))
+		return false;
+	for (size_t i = 0; i < c->lattice_count; i++)
+		if (!is_whole(c->lattice[i], h))
+			return false;
+	for (size_t i = 0; i < c->turning_count; i++) {
+		const turning *t = &c->turnings[i];
+		int k[3], opposite[3];
 
-		turn_by(k, h, &c->rotations[i]);
-		staying += same(k, h) + same(k, opposite);
+		for (int j = 0; j < 3; j++) {
+			k[j] = h[0] * t->by[0][j] + h[1] * t->by[1][j] +
+			       h[2] * t->by[2][j];
+			opposite[j] = -k[j];
+		}
+		if (same(k, h) || same(opposite, h)) {
+			int side = same(k, h) ? 0 : 1;
+
+			if (t->has[side] && !is_whole(t->shift[side], h))
+				return false;
+			staying++;
+		} else if (comes_first(k, h) || comes_first(opposite, h)) {
+			return false;
+		}
 	}
-	return 2 * (int)c->rotation_count / staying;
+	*multiplicity = 2 * (int)c->turning_count / staying;
+	return true;
 }
 
 static bool collect(collection *c, const int h[3], double inv_A2)
 {
-	if (!(inv_A2 > 0) || inv_A2 > c->most_inv_A2)
-		return true;
-	if (!is_standard(c, h) || bh_hkl_absent(c->group, h))
+	int many;
+
+	if (!(inv_A2 > 0) || inv_A2 > c->most_inv_A2 || !is_listed(c, h, &many))
 		return true;
 	if (c->count == c->capacity) {
 		size_t more = c->capacity ? 2 * c->capacity : 64;
@@ -210,8 +258,7 @@ static bool collect(collection *c, const int h[3], double inv_A2)
 		c->planes = grown;
 		c->capacity = more;
 	}
-	c->planes[c->count++] =
-		(bh_hkl){ { h[0], h[1], h[2] }, multiplicity(c, h), 1 / sqrt(inv_A2) };
+	c->planes[c->count++] = (bh_hkl){ { h[0], h[1], h[2] }, many, 1 / sqrt(inv_A2) };
 	return true;
 }
 
@@ -254,7 +301,7 @@ bool bh_hkl_list(bh_hkl **planes, size_t *count, bh_arena *arena, const bh_cell 
 	*count = 0;
 	if (!bh_cell_reciprocal(&c.reciprocal, cell))
 		return true;
-	collect_rotations(&c);
+	collect_turnings(&c);
 	/* |h| ≤ a/d: the projection of the sphere on a direct axis */
 	most_h = (int)floor(sqrt(metric.at[0][0]) / least_d_A + 1e-9);
 	most_k = (int)floor(sqrt(metric.at[1][1]) / least_d_A + 1e-9);

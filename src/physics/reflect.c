@@ -5,6 +5,7 @@
 #include <string.h>
 
 #include "base/units.h"
+#include "physics/amplitude.h"
 #include "physics/bragg.h"
 #include "physics/cell.h"
 #include "physics/corundum.h"
@@ -95,7 +96,7 @@ static bool fill_f2(bh_reflection *list, size_t count, bh_arena *arena,
 		d_A[i] = list[i].d_A;
 		memcpy(h[i], list[i].h, sizeof *h);
 	}
-	if (!bh_structure_f2_table(f2, arena, phase,
+	if (!bh_amplitude_f2_table(f2, phase,
 				   &(bh_f2_query){ (const int(*)[3])h, d_A, count,
 						   energy_keV, radiation->count,
 						   without },
@@ -315,7 +316,7 @@ bool bh_reflect(bh_signal *signal, bh_arena *arena, const bh_scene *scene, bh_er
 
 		if (done && phase->kind == BH_PHASE_ATOMS)
 			done = fill_f2(list, count, arena, phase, radiation,
-				       (bh_without){ scene->request->without_anomalous },
+				       scene->request->without,
 				       err);
 		else if (done && phase->kind == BH_PHASE_LIST &&
 			 phase->corundum_ratio > 0)

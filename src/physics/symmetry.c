@@ -8,6 +8,7 @@
 
 #include "base/nearest.h"
 #include "physics/cell.h"
+#include "physics/operations.h"
 #include "physics/symbol.h"
 
 enum { ROWS = 530, SHOWN = 60 };
@@ -169,21 +170,6 @@ static bool unknown(const char *text, const char *squeezed, bh_err *err)
 		SHOWN, text, nearest);
 }
 
-static bool centric(const bh_space_group *group)
-{
-	for (size_t i = 0; i < group->op_count; i++) {
-		bool inverts = true;
-
-		for (int j = 0; j < 3; j++)
-			for (int k = 0; k < 3; k++)
-				inverts = inverts &&
-					  group->ops[i].rotation[j][k] == -(j == k);
-		if (inverts)
-			return true;
-	}
-	return false;
-}
-
 bool bh_symmetry_row(bh_space_group *group, bh_arena *arena, int hall_number, bh_err *err)
 {
 	int rotations[BH_MAX_IMAGES][3][3], count;
@@ -212,7 +198,7 @@ bool bh_symmetry_row(bh_space_group *group, bh_arena *arena, int hall_number, bh
 		for (int j = 0; j < 3; j++) /* all are multiples of 1/24 */
 			group->ops[i].shift[j] = round(shifts[i][j] * 24) / 24;
 	}
-	group->centrosymmetric = centric(group);
+	group->centrosymmetric = bh_operations_centric(group);
 	return true;
 }
 
@@ -289,6 +275,77 @@ bool bh_symmetry_find(bh_space_group *group, bool *origin_open, bh_arena *arena,
 	return true;
 }
 
+/* Whether the operations are those of a row of the table. */
+static bool is_row(const bh_space_group *group, int row)
+{
+	int rotations[BH_MAX_IMAGES][3][3];
+	double shifts[BH_MAX_IMAGES][3];
+	bh_symop ops[BH_MAX_IMAGES];
+	bh_space_group other = { .ops = ops };
+
+	other.op_count =
+		(size_t)spg_get_symmetry_from_database(rotations, shifts, row);
+	if (other.op_count != group->op_count)
+		return false;
+	for (size_t i = 0; i < other.op_count; i++) {
+		memcpy(ops[i].rotation, rotations[i], sizeof rotations[i]);
+		memcpy(ops[i].shift, shifts[i], sizeof shifts[i]);
+	}
+	return bh_operations_equal(group, &other);
+}
+
+static void take_names(bh_space_group *group, int number)
+{
+	SpglibSpacegroupType type;
+	bh_symbol_row row = row_of(number, &type);
+
+	group->number = type.number;
+	group->hall_number = number;
+	bh_symbol_write(group->symbol, sizeof group->symbol, &row);
+	snprintf(group->hall, sizeof group->hall, "%s", type.hall_symbol);
+	snprintf(group->choice, sizeof group->choice, "%.7s", type.choice);
+}
+
+/* The type of a group in a setting or with an origin that is not in the table; 0: none. */
+static int type_of(const bh_space_group *group, const bh_cell *cell)
+{
+	int rotations[BH_MAX_IMAGES][3][3];
+	double shifts[BH_MAX_IMAGES][3], lattice[3][3];
+
+	bh_cell_axes(lattice, cell);
+	for (size_t i = 0; i < group->op_count; i++) {
+		memcpy(rotations[i], group->ops[i].rotation, sizeof rotations[i]);
+		memcpy(shifts[i], group->ops[i].shift, sizeof shifts[i]);
+	}
+	return spg_get_spacegroup_type_from_symmetry(rotations, shifts,
+						     (int)group->op_count, lattice, 1e-4)
+		.number;
+}
+
+bool bh_symmetry_name(bh_space_group *group, const bh_cell *cell)
+{
+	int number;
+
+	for (int row = 1; row <= ROWS; row++)
+		if (is_row(group, row)) {
+			take_names(group, row);
+			return true;
+		}
+	number = type_of(group, cell);
+	if (number < 1 || number > 230)
+		return false;
+	for (int row = 1; row <= ROWS; row++)
+		if (spg_get_spacegroup_type(row).number == number) {
+			take_names(group, row);
+			break;
+		}
+	/* the kind is known, the setting has no name */
+	group->hall_number = 0;
+	group->hall[0] = '\0';
+	group->choice[0] = '\0';
+	return true;
+}
+
 /* Rᵀ G R of one operation. */
 static bh_mat3 turned(const bh_mat3 *metric, const bh_symop *op)
 {
@@ -352,6 +409,13 @@ static void cell_values(double values[6], const bh_mat3 *metric)
 	}
 }
 
+void bh_symmetry_fit_cell(bh_cell *cell, const bh_space_group *group)
+{
+	bh_mat3 metric = bh_cell_metric(cell), mean = mean_metric(group, &metric);
+
+	bh_cell_of_metric(cell, &mean);
+}
+
 unsigned bh_symmetry_free_cell(const bh_space_group *group)
 {
 	/* two cells without any regularity, made to obey the group: a value that is the same
@@ -400,19 +464,19 @@ static void way(double away[3], const double a[3], const double b[3])
 	}
 }
 
-/* The special position that a point was meant to stand on: the mean of its images within
- * reach, so that 0.3333 becomes 1/3. */
-static void settle(double exact[3], const bh_space_group *group, const bh_mat3 *metric,
-		   const double at[3], double within_A)
+void bh_symmetry_settle(double exact[3], const bh_space_group *group, const bh_cell *cell,
+			const double at[3], double within_A)
 {
+	bh_mat3 metric = bh_cell_metric(cell);
 	double sum[3] = { 0 }, n = 0;
+	double reach_A = within_A > 0 ? within_A : BH_REACH_DEFAULT_A;
 
 	for (size_t i = 0; i < group->op_count; i++) {
 		double image[3], away[3];
 
 		move(image, &group->ops[i], at);
 		way(away, at, image);
-		if (bh_mat3_form(metric, away, away) >= within_A * within_A)
+		if (bh_mat3_form(&metric, away, away) >= reach_A * reach_A)
 			continue;
 		n++;
 		for (int j = 0; j < 3; j++)
@@ -427,10 +491,11 @@ size_t bh_symmetry_orbit(const bh_space_group *group, const bh_cell *cell,
 			 double images[BH_MAX_IMAGES][3])
 {
 	bh_mat3 metric = bh_cell_metric(cell);
+	double reach_A = within_A > 0 ? within_A : BH_REACH_DEFAULT_A;
 	double exact[3];
 	size_t count = 0;
 
-	settle(exact, group, &metric, at, within_A);
+	bh_symmetry_settle(exact, group, cell, at, within_A);
 	for (size_t n = 0; n < group->op_count; n++) {
 		double image[3];
 		bool seen = false;
@@ -440,7 +505,7 @@ size_t bh_symmetry_orbit(const bh_space_group *group, const bh_cell *cell,
 			double away[3];
 
 			way(away, images[i], image);
-			seen = bh_mat3_form(&metric, away, away) < within_A * within_A;
+			seen = bh_mat3_form(&metric, away, away) < reach_A * reach_A;
 		}
 		if (!seen)
 			memcpy(images[count++], image, sizeof image);

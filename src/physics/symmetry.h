@@ -30,13 +30,34 @@ bool bh_symmetry_row(bh_space_group *group, bh_arena *arena, int hall_number,
  * allows, e.g. 0.02 for a = 4.9, b = 5.0 in a cubic group. */
 double bh_symmetry_misfit(const bh_space_group *group, const bh_cell *cell);
 
+/* Number, symbol and Hall symbol of a group given by its operations alone, in a cell that they
+ * leave as it is. Of a setting or origin that is not in the table: number and symbol of the
+ * group's first setting, hall_number 0 and no Hall symbol.
+ *   false  the database finds no type */
+bool bh_symmetry_name(bh_space_group *group, const bh_cell *cell);
+
+/* Make a cell that nearly has the group's symmetry have it: the mean metric under the
+ * operations. */
+void bh_symmetry_fit_cell(bh_cell *cell, const bh_space_group *group);
+
 /* How many values describe a cell of this group, and which: bit 0 to 5 of the result for
  * a b c α β γ. (Cubic: a; hexagonal axes and tetragonal: a c; rhombohedral axes: a α; ...) */
 unsigned bh_symmetry_free_cell(const bh_space_group *group);
 
 enum { BH_MAX_IMAGES = 192 };
 
-/* All images of a point in the cell, in [0, 1), doubles (closer than within_A) merged.
+/* How near two images of a site may be before they count as one atom, when its own precision
+ * does not say: a third printed as 0.33 puts images up to 0.06 Å apart in a cell of 10 Å;
+ * split sites of disorder are reported from 0.1 Å on. */
+#define BH_REACH_DEFAULT_A 0.06
+
+/* The special position that a point was meant to stand on: the mean of its images closer than
+ * within_A (0: the default), so that 0.3333 becomes 1/3. */
+void bh_symmetry_settle(double exact[3], const bh_space_group *group, const bh_cell *cell,
+			const double at[3], double within_A);
+
+/* All images of a point in the cell, in [0, 1), doubles (closer than within_A, 0: the
+ * default) merged.
  *   returns  how many; images[i] filled */
 size_t bh_symmetry_orbit(const bh_space_group *group, const bh_cell *cell,
 			 const double at[3], double within_A,

@@ -39,24 +39,8 @@ double bh_xray_density_g_cm3(int z)
 	return known(z) ? ElementDensity(z, NULL) : 0;
 }
 
-/* The database has the free hydrogen atom; in a solid its electron is drawn in by the bond.
- * R. F. Stewart, E. R. Davidson & W. T. Simpson, J. Chem. Phys. 42 (1965) 3175, as sums of
- * Gaussians in International Tables C (2004) Table 6.1.1.4. */
-static double bonded_hydrogen(double s_inv_A)
-{
-	static const double a[] = { 0.493002, 0.322912, 0.140191, 0.04081 };
-	static const double b_A2[] = { 10.5109, 26.1257, 3.14236, 57.7997 };
-	double f0 = 0.003038;
-
-	for (int i = 0; i < 4; i++)
-		f0 += a[i] * exp(-b_A2[i] * s_inv_A * s_inv_A);
-	return f0;
-}
-
 double bh_xray_f0(int z, double s_inv_A)
 {
-	if (z == 1)
-		return bonded_hydrogen(s_inv_A);
 	return known(z) ? FF_Rayl(z, s_inv_A, NULL) : 0;
 }
 

@@ -15,7 +15,8 @@ const char *bh_xray_symbol(int z);   /* "Fe"; "?" outside 1 to 92   */
 double bh_xray_molar_mass_g(int z);  /* g/mol                       */
 double bh_xray_density_g_cm3(int z); /* of the element as it stands */
 
-/* Form factor of the neutral atom, electrons; s = sinθ/λ in 1/Å. Hydrogen: bonded. */
+/* Form factor of the free neutral atom, electrons; s = sinθ/λ in 1/Å. Good enough for
+ * diffuse scattering; structure factors use the table of data/form_factors. */
 double bh_xray_f0(int z, double s_inv_A);
 double bh_xray_f_prime(int z, double energy_keV);	 /* usual sign                */
 double bh_xray_f_double_prime(int z, double energy_keV); /* ≥ 0                       */

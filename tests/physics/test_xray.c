@@ -129,16 +129,16 @@ static void dispersion(void **state)
 			assert_true(bh_xray_f_double_prime(z, keV) >= 0);
 }
 
-/* Form factors of D. Waasmaier & A. Kirfel, Acta Cryst. A51 (1995) 416, by cctbx; hydrogen as in
- * a bond (R. F. Stewart et al., 1965). At s = 0 the number of electrons. */
+/* Form factors of D. Waasmaier & A. Kirfel, Acta Cryst. A51 (1995) 416, by cctbx; hydrogen: the
+ * free atom, 1/(1 + (2π a0 s)²)² exactly. At s = 0 the number of electrons. */
 static void form_factors(void **state)
 {
 	static const struct {
 		int z;
 		double s_inv_A, f0, within_frac;
 	} rows[] = {
-		{ H, 0.05, 0.9602, 2e-4 },   { H, 0.2, 0.5681, 2e-4 },
-		{ H, 0.4, 0.1845, 5e-4 },    { 6, 0.2, 3.5572, 0.007 },
+		{ H, 0.05, 0.9469, 2e-4 },   { H, 0.2, 0.4808, 2e-4 },
+		{ H, 0.4, 0.1304, 1e-3 },    { 6, 0.2, 3.5572, 0.007 },
 		{ O, 0.25, 4.8081, 0.002 },  { FE, 0.1, 23.679, 0.002 },
 		{ FE, 0.4, 13.8426, 0.005 },
 	};

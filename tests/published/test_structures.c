@@ -7,6 +7,7 @@
 #include <string.h>
 
 #include "base/units.h"
+#include "physics/amplitude.h"
 #include "physics/bragg.h"
 #include "physics/cell.h"
 #include "physics/hkl.h"
@@ -14,7 +15,8 @@
 
 /* Cu Kα1, International Tables C (2004) Table 4.2.2.4 */
 static const double cu_ka1_A = 1.5405929, cu_ka2_A = 1.5444274;
-static const bh_without everything_in = { false }, no_dispersion = { true };
+static const bh_without everything_in = { .anomalous = false },
+			no_dispersion = { .anomalous = true };
 
 static int set_up(void **state)
 {
@@ -57,7 +59,7 @@ static double intensity(const bh_phase *phase, const bh_hkl *plane, double wavel
 
 	assert_true(bh_bragg_two_theta_deg(&two_theta_deg, plane->d_A, wavelength_A));
 	return plane->multiplicity * lorentz(two_theta_deg) *
-	       bh_structure_f2(phase, plane->h, plane->d_A, bh_energy_keV(wavelength_A),
+	       bh_amplitude_f2(phase, plane->h, plane->d_A, bh_energy_keV(wavelength_A),
 			       without);
 }
 
@@ -203,7 +205,7 @@ static void copper_of_the_handbook(void **state)
 		double two_theta_deg, mine, f;
 
 		assert_true(bh_bragg_two_theta_deg(&two_theta_deg, plane.d_A, 1.542));
-		f = sqrt(bh_structure_f2(&phase, plane.h, plane.d_A, bh_energy_keV(1.542),
+		f = sqrt(bh_amplitude_f2(&phase, plane.h, plane.d_A, bh_energy_keV(1.542),
 					 no_dispersion)) /
 		    4;
 		mine = 10 * intensity(&phase, &plane, 1.542, no_dispersion) / first;
@@ -233,7 +235,7 @@ static void sodium_chloride(void **state)
 
 	for (size_t i = 0; i < sizeof rows / sizeof *rows; i++) {
 		bh_hkl plane = plane_of(&phase, rows[i].plane);
-		double f2 = bh_structure_f2(&phase, plane.h, plane.d_A,
+		double f2 = bh_amplitude_f2(&phase, plane.h, plane.d_A,
 					    bh_energy_keV(cu_ka1_A), no_dispersion);
 
 		assert_ratio(sqrt(f2), rows[i].f, rows[i].within_frac, rows[i].plane);
@@ -258,7 +260,7 @@ static void sphalerite(void **state)
 		double zn = rows[i].f_zn, s = rows[i].f_s;
 		double want = 16 * (zn * zn + s * s + 2 * rows[i].kind * zn * s);
 
-		assert_ratio(bh_structure_f2(&phase, plane.h, plane.d_A,
+		assert_ratio(bh_amplitude_f2(&phase, plane.h, plane.d_A,
 					     bh_energy_keV(cu_ka1_A), no_dispersion),
 			     want, 0.015, rows[i].plane);
 	}
@@ -326,7 +328,7 @@ static void retained_austenite(void **state)
 			bh_bragg_two_theta_deg(&two_theta_deg, plane.d_A, wavelength_A));
 		s = 1 / (2 * plane.d_A);
 		f0 = bh_xray_f0(26, s);
-		f2 = bh_structure_f2(&phase, plane.h, plane.d_A,
+		f2 = bh_amplitude_f2(&phase, plane.h, plane.d_A,
 				     bh_energy_keV(wavelength_A), no_dispersion) /
 		     (f0 * f0) * (pow(f0 + f_prime, 2) + pow(f_double_prime, 2));
 		v = phase.volume_A3;
