@@ -4,16 +4,34 @@
 #include <stdio.h>
 #include <string.h>
 
+/* Text that did not fit may end within a UTF-8 character: that part goes, so that a message
+ * stays text for terminal, JSON and PDF. */
+static void copy(char *to, size_t room, const char *from, size_t length)
+{
+	size_t n = length < room ? length : room - 1, start = n, need;
+
+	while (start > 0 && n - start < 3 &&
+	       ((unsigned char)from[start - 1] & 0xC0) == 0x80)
+		start--;
+	if (start > 0) {
+		unsigned char lead = (unsigned char)from[start - 1];
+
+		need = lead >= 0xF0 ? 4 : lead >= 0xE0 ? 3 : lead >= 0xC0 ? 2 : 1;
+		if (need > n - start + 1)
+			n = start - 1;
+	}
+	memcpy(to, from, n);
+	to[n] = '\0';
+}
+
 static void split_hint(bh_err *err, const char *text)
 {
 	const char *cut = strchr(text, '\n');
 	size_t n = cut ? (size_t)(cut - text) : strlen(text);
+	const char *hint = cut ? cut + 1 : "";
 
-	if (n >= sizeof err->what)
-		n = sizeof err->what - 1;
-	memcpy(err->what, text, n);
-	err->what[n] = '\0';
-	snprintf(err->hint, sizeof err->hint, "%s", cut ? cut + 1 : "");
+	copy(err->what, sizeof err->what, text, n);
+	copy(err->hint, sizeof err->hint, hint, strlen(hint));
 }
 
 bool bh_fail(bh_err *err, bh_code code, const char *format, ...)
@@ -63,7 +81,8 @@ bool bh_problem(bh_problems *problems, bh_place place, const char *format, ...)
 	va_start(args, format);
 	vsnprintf(text, sizeof text, format, args);
 	va_end(args);
-	snprintf(err.file, sizeof err.file, "%s", place.file ? place.file : "");
+	if (place.file)
+		copy(err.file, sizeof err.file, place.file, strlen(place.file));
 	split_hint(&err, text);
 	return bh_problem_add(problems, &err);
 }

@@ -103,7 +103,7 @@ bool bh_duration_read(double *seconds, const char *text, size_t length)
 		sum += value * unit;
 		i += word;
 	}
-	if (!(sum > 0))
+	if (!(sum > 0) || !isfinite(sum))
 		return false;
 	*seconds = sum;
 	return true;

@@ -10,8 +10,12 @@ static bool reserve(bh_text *text, size_t more)
 	size_t want = text->length + more + 1, capacity = text->capacity;
 	char *bytes;
 
-	if (text->lost || want < more)
+	if (text->lost)
 		return false;
+	if (want < more) {
+		text->lost = true;
+		return false;
+	}
 	if (want <= capacity)
 		return true;
 	if (capacity < 256)
@@ -50,7 +54,9 @@ void bh_text_format(bh_text *text, const char *format, ...)
 	va_start(args, format);
 	va_copy(again, args);
 	n = vsnprintf(NULL, 0, format, args);
-	if (n >= 0 && reserve(text, (size_t)n)) {
+	if (n < 0)
+		text->lost = true;
+	else if (reserve(text, (size_t)n)) {
 		vsnprintf(text->bytes + text->length, (size_t)n + 1, format, again);
 		text->length += (size_t)n;
 	}

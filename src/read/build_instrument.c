@@ -6,6 +6,7 @@
 #include <string.h>
 
 #include "physics/xray.h"
+#include "read/suggest.h"
 
 typedef struct {
 	const bh_conf_section *s; /* NULL: the file does not have it */
@@ -47,6 +48,8 @@ static bool pair(double *low, double *high, const part *p, const char *key)
 {
 	const bh_conf_entry *entry = bh_conf_entry_of(p->s, key);
 
+	if (!entry) /* noted */
+		return false;
 	if (entry->count != 2 || !(entry->values[0].number < entry->values[1].number))
 		return bh_problem(
 			p->problems, entry->place,
@@ -56,13 +59,32 @@ static bool pair(double *low, double *high, const part *p, const char *key)
 	return true;
 }
 
-/* A key that another one needs. */
+/* A key that another one needs; it may be what a faulty section lacks. */
 static bool needs(const part *p, const char *key, const char *because)
 {
-	return bh_conf_entry_of(p->s, key) ||
+	return bh_conf_entry_of(p->s, key) || p->s->faulty ||
 	       bh_problem(p->problems, p->s->place,
 			  "\"%s\" has no \"%s\"\nit is needed with %s", p->name, key,
 			  because);
+}
+
+/* Keys that mean nothing without another one. */
+static bool alone(const part *p, const char *keys, const char *without)
+{
+	bool good = true;
+
+	for (size_t i = 0; i < p->s->entry_count; i++) {
+		const bh_conf_entry *entry = &p->s->entries[i];
+		const char *found = strstr(keys, entry->key->name);
+		size_t n = strlen(entry->key->name);
+
+		if (found && (found == keys || found[-1] == ' ') &&
+		    (found[n] == ' ' || !found[n]) && !p->s->faulty)
+			good = bh_problem(p->problems, entry->place,
+					  "\"%s\" means nothing here\nit goes with %s",
+					  entry->key->name, without);
+	}
+	return good;
 }
 
 static bool element(int *z, const part *p, const char *key)
@@ -72,10 +94,10 @@ static bool element(int *z, const part *p, const char *key)
 		return true;
 	*z = bh_xray_z(text(p, key));
 	return *z ||
-	       bh_problem(
-		       p->problems, place_of(p, key),
-		       "\"%s\" is \"%s\", no element\nallowed: symbols H to U, like Ni",
-		       key, text(p, key));
+	       bh_problem(p->problems, place_of(p, key),
+			  "\"%s\" is \"%s\": that is no element\nallowed: symbols H "
+			  "to U, like Ni",
+			  key, text(p, key));
 }
 
 static bool goniometer(bh_instrument *to, const bh_conf_section *root,
@@ -83,12 +105,19 @@ static bool goniometer(bh_instrument *to, const bh_conf_section *root,
 {
 	part p = part_of(root, "goniometer", problems);
 
+	if (!p.s)
+		return false;
 	to->radius_mm = number(&p, "radius_mm");
 	to->smallest_step_deg = number(&p, "smallest_step");
 	to->fastest_deg_s = number(&p, "fastest");
 	to->settle_s = number(&p, "settle_s");
 	to->shortest_step_s = number(&p, "shortest_s");
-	return pair(&to->two_theta_min_deg, &to->two_theta_max_deg, &p, "two_theta");
+	if (!pair(&to->two_theta_min_deg, &to->two_theta_max_deg, &p, "two_theta"))
+		return false;
+	return to->two_theta_max_deg - fmax(to->two_theta_min_deg, 0) >= 1 ||
+	       bh_problem(problems, place_of(&p, "two_theta"),
+			  "\"two_theta\" leaves less than 1° to measure in\n{low, high} "
+			  "with high at least 1° above low and above 0");
 }
 
 static bool crystal(bh_monochromator *to, const part *p)
@@ -99,7 +128,18 @@ static bool crystal(bh_monochromator *to, const part *p)
 	to->mosaic_deg = number(p, "monochromator_mosaic");
 	to->reflectivity = number(p, "monochromator_reflectivity");
 	to->ka1_only = number(p, "ka1_only") > 0;
-	if (to->ka1_only && (!(to->two_theta_deg > 0) || to->side != BH_SIDE_TUBE))
+	if (to->two_theta_deg > 0 && to->two_theta_deg < 2)
+		return bh_problem(p->problems, place_of(p, "monochromator"),
+				  "\"monochromator\" is %g\nallowed: 2 to 120 °2θ, or 0 "
+				  "for none",
+				  to->two_theta_deg);
+	if (!(to->two_theta_deg > 0) &&
+	    !alone(p,
+		   "monochromator_side monochromator_mosaic monochromator_reflectivity",
+		   "monochromator = angle"))
+		return false;
+	if (to->ka1_only && !p->s->faulty &&
+	    (!(to->two_theta_deg > 0) || to->side != BH_SIDE_TUBE))
 		return bh_problem(
 			p->problems, place_of(p, "ka1_only"),
 			"\"ka1_only\" needs a monochromator on the tube's side\ngive "
@@ -143,9 +183,9 @@ static bool tube(bh_tube *to, const bh_conf_section *s, bh_problems *problems)
 			 bh_anodes[i].symbol);
 	}
 	if (!to->anode)
-		return bh_problem(problems, s->title_place,
-				  "no such anode: \"%.40s\"\nallowed: %s", s->title,
-				  list);
+		bh_problem(problems, s->title_place,
+			   "no such anode: \"%.*s\"\nallowed: %s",
+			   bh_suggest_cut(s->title, 40), s->title, list);
 	to->most_kV = number(&p, "most_kV");
 	to->most_mA = number(&p, "most_mA");
 	to->most_W = number(&p, "most_W");
@@ -160,10 +200,14 @@ static bool tube(bh_tube *to, const bh_conf_section *s, bh_problems *problems)
 	to->throughput = number(&p, "throughput");
 	to->throughput_factor = number(&p, "throughput_factor");
 	to->tungsten_share = number(&p, "tungsten");
-	good = generator(to, &p);
+	good = generator(to, &p) && to->anode;
 	good = element(&to->foil_z, &p, "foil") && good;
 	if (to->foil_z)
 		good = needs(&p, "foil_um", "foil") && good;
+	else if (!*text(&p, "foil"))
+		good = alone(&p, "foil_um foil_side",
+			     "foil = \"Ni\" or another element") &&
+		       good;
 	return crystal(&to->monochromator, &p) && good;
 }
 
@@ -197,17 +241,25 @@ static bool slits(bh_instrument *to, const bh_conf_section *root, bh_problems *p
 	part p = part_of(root, "slits", problems);
 	const bh_conf_entry *offered = bh_conf_entry_of(p.s, "divergence");
 
+	if (!p.s)
+		return false;
 	to->automatic_length_mm = number_or_0(&p, "automatic_length_mm");
 	to->beam_width_mm = number(&p, "beam_width_mm");
 	to->soller_tube_deg = number_or_0(&p, "soller_tube");
 	to->soller_detector_deg = number_or_0(&p, "soller_detector");
 	to->usual_divergence_deg = number_or_0(&p, "usual");
-	if (!offered && !(to->automatic_length_mm > 0))
+	if (to->automatic_length_mm > 0 && to->automatic_length_mm < 1)
+		return bh_problem(
+			problems, place_of(&p, "automatic_length_mm"),
+			"\"automatic_length_mm\" is %g\nallowed: 1 to 100 mm, or "
+			"0 for none",
+			to->automatic_length_mm);
+	if (!offered && !(to->automatic_length_mm > 0) && !p.s->faulty)
 		return bh_problem(problems, p.s->place,
 				  "\"slits\" offers no divergence\ngive divergence "
 				  "= {...} and usual, or automatic_length_mm");
 	if (!offered)
-		return true;
+		return alone(&p, "usual", "divergence = {...}");
 	if (offered->count > BH_MAX_SLITS)
 		return bh_problem(problems, offered->place,
 				  "more than %d slits\ntake some out", BH_MAX_SLITS);
@@ -215,7 +267,7 @@ static bool slits(bh_instrument *to, const bh_conf_section *root, bh_problems *p
 		to->divergence_deg[to->divergence_count++] = offered->values[i].number;
 	qsort(to->divergence_deg, to->divergence_count, sizeof *to->divergence_deg,
 	      ascending);
-	if (!needs(&p, "usual", "divergence"))
+	if (!needs(&p, "usual", "divergence") || !bh_conf_entry_of(p.s, "usual"))
 		return false;
 	for (size_t i = 0; i < to->divergence_count; i++)
 		if (fabs(to->divergence_deg[i] - to->usual_divergence_deg) < 1e-9)
@@ -226,38 +278,53 @@ static bool slits(bh_instrument *to, const bh_conf_section *root, bh_problems *p
 			  to->usual_divergence_deg);
 }
 
+/* What the two kinds of detector need. */
+static bool aperture(bh_detector *to, const part *p)
+{
+	bool strip = strcmp(text(p, "kind"), "strip") == 0, good;
+
+	to->kind = strip ? BH_DETECTOR_STRIP : BH_DETECTOR_SLIT;
+	to->aperture_mm = number_or_0(p, strip ? "pitch_mm" : "aperture_mm");
+	to->channels = strip ? (size_t)number_or_0(p, "channels") : 1;
+	to->standing = strip && number(p, "standing") > 0;
+	if (!strip) {
+		good = needs(p, "aperture_mm", "kind = \"slit\"");
+		return alone(p, "pitch_mm channels standing", "kind = \"strip\"") && good;
+	}
+	good = needs(p, "pitch_mm", "kind = \"strip\"");
+	good = needs(p, "channels", "kind = \"strip\"") && good;
+	return alone(p, "aperture_mm", "kind = \"slit\"") && good;
+}
+
 static bool detector(bh_instrument *instrument, const bh_conf_section *root,
 		     bh_problems *problems)
 {
 	part p = part_of(root, "detector", problems);
 	bh_detector *to = &instrument->detector;
-	bool strip = strcmp(text(&p, "kind"), "strip") == 0, good = true;
+	bool good;
 
-	to->kind = strip ? BH_DETECTOR_STRIP : BH_DETECTOR_SLIT;
-	if (strip) {
-		good = needs(&p, "pitch_mm", "kind = \"strip\"");
-		good = needs(&p, "channels", "kind = \"strip\"") && good;
-	} else {
-		good = needs(&p, "aperture_mm", "kind = \"slit\"");
-	}
-	to->aperture_mm = number_or_0(&p, strip ? "pitch_mm" : "aperture_mm");
-	to->channels = strip ? (size_t)number_or_0(&p, "channels") : 1;
+	if (!p.s)
+		return false;
 	to->height_mm = number(&p, "height_mm");
 	to->sensor_um = number_or_0(&p, "sensor_um");
 	to->efficiency = number(&p, "efficiency");
 	to->resolution_frac = number(&p, "resolution");
 	to->tail_frac = number(&p, "tail");
 	to->linear_limit_cps = number(&p, "linear_limit");
-	to->standing = strip && number(&p, "standing") > 0;
+	good = aperture(to, &p);
 	good = element(&to->sensor_z, &p, "sensor") && good;
 	if (to->sensor_z)
 		good = needs(&p, "sensor_um", "sensor") && good;
-	good = pair(&to->window_low_frac, &to->window_high_frac, &p, "window") && good;
-	if (good && !(to->window_low_frac < 1 && to->window_high_frac > 1))
-		good = bh_problem(problems, place_of(&p, "window"),
-				  "\"window\" leaves Kα out\nit must "
-				  "hold 1, the Kα energy, like {0.75, 1.25}");
-	return good;
+	else if (!*text(&p, "sensor"))
+		good = alone(&p, "sensor_um", "sensor = \"Si\" or another element") &&
+		       good;
+	if (!pair(&to->window_low_frac, &to->window_high_frac, &p, "window"))
+		return false;
+	if (to->window_low_frac < 1 && to->window_high_frac > 1)
+		return good;
+	return bh_problem(problems, place_of(&p, "window"),
+			  "\"window\" leaves Kα out\nit must hold 1, the Kα energy, like "
+			  "{0.75, 1.25}");
 }
 
 static bool gas(bh_gas *to, const part *p, const char *key)
@@ -274,6 +341,8 @@ static bool profile(bh_instrument *to, const bh_conf_section *root, bh_problems 
 {
 	part p = part_of(root, "profile", problems);
 
+	if (!p.s || p.s->faulty) /* noted */
+		return false;
 	to->gauss_tan2_deg2 = number(&p, "gauss_tan2");
 	to->gauss_tan_deg2 = number(&p, "gauss_tan");
 	to->gauss_0_deg2 = number(&p, "gauss_0");
@@ -305,6 +374,8 @@ static bool blank(bh_instrument *to, bh_arena *arena, const bh_conf_section *roo
 		return true;
 	x = bh_conf_entry_of(p.s, "two_theta");
 	y = bh_conf_entry_of(p.s, "rate");
+	if (!x || !y) /* noted */
+		return false;
 	if (x->count != y->count)
 		return bh_problem(problems, y->place,
 				  "\"rate\" has %zu values, \"two_theta\" has %zu\n"

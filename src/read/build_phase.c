@@ -14,6 +14,8 @@
 #include "physics/xray.h"
 #include "read/suggest.h"
 
+enum { SHOWN = 60 };
+
 static double number(const bh_conf_section *s, const char *key)
 {
 	return bh_conf_number(BH_FILE_REQUEST, s, "phase", key);
@@ -29,40 +31,56 @@ static bool note(bh_problems *problems, bh_place place, const bh_err *err)
 	return bh_problem(problems, place, "%s\n%s", err->what, err->hint);
 }
 
+/* "FE", "fe" or "Fe3+" as a symbol is written: "Fe". A near symbol of another element would be
+ * a bad guess. */
+static bool bare_symbol(char symbol[3], const char *text)
+{
+	size_t n = 0;
+
+	for (; (text[n] | 32) >= 'a' && (text[n] | 32) <= 'z'; n++)
+		if (n < 2)
+			symbol[n] = (char)(n ? text[n] | 32 : text[n] & ~32);
+	symbol[n < 2 ? n : 2] = '\0';
+	return n == 1 || n == 2;
+}
+
 static bool read_element(int *z, const bh_conf_value *value, bh_problems *problems)
 {
-	bh_suggestion near = { 0 };
 	const char *symbol = strcmp(value->text, "D") == 0 ? "H" : value->text;
+	char meant[3];
+	bool known;
 
 	*z = bh_xray_z(symbol);
 	if (*z)
 		return true;
-	for (int i = 1; i <= BH_Z_MAX; i++)
-		if (bh_xray_symbol(i)[0] == value->text[0])
-			bh_suggest(&near, value->text, bh_xray_symbol(i));
+	known = bare_symbol(meant, value->text) && bh_xray_z(meant);
 	return bh_problem(problems, value->place,
-			  "\"%s\" is no element\n%s%s%sallowed: symbols H to U, like Fe",
-			  value->text, near.word ? "did you mean \"" : "",
-			  near.word ? near.word : "", near.word ? "\"? " : "");
+			  "\"%s\" is no element from H to U\n%s%s%sallowed: symbols like "
+			  "Fe, without charge",
+			  value->text, known ? "did you mean \"" : "", known ? meant : "",
+			  known ? "\"? " : "");
 }
 
 static bool build_site(bh_site *site, const bh_conf_section *s, bh_problems *problems)
 {
 	const bh_conf_entry *at = bh_conf_entry_of(s, "at");
+	const bh_conf_entry *element = bh_conf_entry_of(s, "element");
 	double b = bh_conf_number(BH_FILE_REQUEST, s, "site", "b_iso");
-	bool good = read_element(&site->z, &bh_conf_entry_of(s, "element")->values[0],
-				 problems);
+	bool good = !s->faulty;
 
-	snprintf(site->label, sizeof site->label, "%s", s->title);
+	snprintf(site->label, sizeof site->label, "%.*s",
+		 bh_suggest_cut(s->title, sizeof site->label - 1), s->title);
 	site->place = s->place;
 	site->occupancy = bh_conf_number(BH_FILE_REQUEST, s, "site", "occupancy");
 	site->b_known = isfinite(b);
 	site->b_iso_A2 = site->b_known ? b : BH_B_ISO_DEFAULT_A2;
-	if (at->count != 3)
+	if (element)
+		good = read_element(&site->z, &element->values[0], problems) && good;
+	if (at && at->count != 3)
 		return bh_problem(problems, at->place,
-				  "\"at\" has %zu values\nit needs 3: {x, y, z}",
-				  at->count);
-	for (int i = 0; i < 3; i++)
+				  "\"at\" has %zu value%s\nit needs 3: {x, y, z}",
+				  at->count, at->count == 1 ? "" : "s");
+	for (int i = 0; at && i < 3; i++)
 		site->at[i] = at->values[i].number;
 	return good;
 }
@@ -84,15 +102,6 @@ static bool build_sites(bh_phase *phase, bh_arena *arena, const bh_conf_section 
 	return good;
 }
 
-static int bits(unsigned mask)
-{
-	int n = 0;
-
-	for (; mask; mask >>= 1)
-		n += (mask & 1) ? 1 : 0;
-	return n;
-}
-
 static const char *system_name(int number)
 {
 	return number <= 2     ? "triclinic"
@@ -102,6 +111,27 @@ static const char *system_name(int number)
 	       : number <= 167 ? "trigonal"
 	       : number <= 194 ? "hexagonal"
 			       : "cubic";
+}
+
+/* What the symmetry fixes of a cell. */
+static const char *cell_rule(const bh_space_group *group)
+{
+	enum { ALPHA = 1 << 3, BETA = 1 << 4 };
+	unsigned open = bh_symmetry_free_cell(group);
+
+	if (group->number <= 15)
+		return open & ALPHA  ? "β = γ = 90°"
+		       : open & BETA ? "α = γ = 90°"
+				     : "α = β = 90°";
+	if (group->number <= 74)
+		return "α = β = γ = 90°";
+	if (group->number <= 142)
+		return "a = b and α = β = γ = 90°";
+	if (strcmp(group->choice, "R") == 0)
+		return "a = b = c and α = β = γ";
+	if (group->number <= 194)
+		return "a = b, α = β = 90° and γ = 120°";
+	return "a = b = c and α = β = γ = 90°";
 }
 
 /* The short forms of a cell: 1, 2, 3 or 6 values by crystal system. */
@@ -134,6 +164,17 @@ static bool spread_cell(double cell[6], const bh_space_group *group,
 	return true;
 }
 
+static const char *short_form(const bh_space_group *group)
+{
+	if (group->number <= 15)
+		return "6 values: ";
+	if (group->number <= 74)
+		return "3 values: a, b, c (Å)";
+	if (strcmp(group->choice, "R") == 0)
+		return "2 values: a (Å), α (°)";
+	return group->number <= 194 ? "2 values: a, c (Å)" : "1 value: a (Å)";
+}
+
 static bool check_cell(const bh_phase *phase, const bh_conf_entry *given,
 		       bh_problems *problems)
 {
@@ -164,10 +205,10 @@ static bool check_cell(const bh_phase *phase, const bh_conf_entry *given,
 	if (misfit > 1e-3)
 		return bh_problem(problems, given->place,
 				  "this cell does not have the symmetry of %s (off by "
-				  "%.2g)\na %s cell "
-				  "needs equal edges and fixed angles as its group says",
+				  "%.2g)\na %s cell has %s",
 				  phase->group.symbol, misfit,
-				  system_name(phase->group.number));
+				  system_name(phase->group.number),
+				  cell_rule(&phase->group));
 	return true;
 }
 
@@ -179,14 +220,12 @@ static bool build_cell(bh_phase *phase, const bh_conf_section *section,
 
 	if (!spread_cell(cell, &phase->group, given))
 		return bh_problem(problems, given->place,
-				  "\"cell\" has %zu value%s\na %s cell needs %d (edges, "
-				  "then angles), or "
-				  "all 6",
+				  "\"cell\" has %zu value%s\na %s cell needs %s%s",
 				  given->count, given->count == 1 ? "" : "s",
 				  system_name(phase->group.number),
-				  phase->group.number <= 15
-					  ? 6
-					  : bits(bh_symmetry_free_cell(&phase->group)));
+				  short_form(&phase->group),
+				  phase->group.number <= 15 ? "a, b, c (Å), α, β, γ (°)"
+							    : ", or all 6");
 	phase->cell = (bh_cell){ cell[0], cell[1], cell[2], cell[3], cell[4], cell[5] };
 	return check_cell(phase, given, problems);
 }
@@ -210,32 +249,67 @@ static bool build_group(bh_phase *phase, bh_arena *arena, const bh_conf_section 
 	return true;
 }
 
-static bool crystal(bh_phase *phase, bh_arena *arena, const bh_conf_section *section,
-		    bh_problems *problems)
+/* Atoms that stand in each other. */
+static bool check_clash(const bh_phase *phase, bh_problems *problems)
 {
-	bh_err err = { BH_OK, 0, 0, "", "", "" };
 	size_t i, j;
 	double distance;
-	bool good = build_sites(phase, arena, section, problems);
 
-	if (!build_group(phase, arena, section, problems))
+	if (!bh_structure_clash(phase, 0.5, &i, &j, &distance))
+		return true;
+	return bh_problem(problems, phase->sites[j].place,
+			  i == j ? "images of site \"%s\" clash with site \"%s\": %.2f Å "
+				   "apart\ncheck its coordinates, the origin choice and "
+				   "the occupancies"
+				 : "sites \"%s\" and \"%s\" clash: %.2f Å apart\natoms "
+				   "stand at least 0.5 Å apart; occupancies at one place "
+				   "sum to at most 1",
+			  phase->sites[i].label, phase->sites[j].label, distance);
+}
+
+static bh_built crystal(bh_phase *phase, bh_arena *arena, const bh_conf_section *section,
+			bh_problems *problems)
+{
+	bh_err err = { BH_OK, 0, 0, "", "", "" };
+	bool good = build_sites(phase, arena, section, problems) && !section->faulty;
+
+	if (!bh_conf_entry_of(section, "space_group") ||
+	    !build_group(phase, arena, section, problems) ||
+	    !bh_conf_entry_of(section, "cell") || !build_cell(phase, section, problems))
+		return BH_BUILT_NOT;
+	phase->kind = section->section_count ? BH_PHASE_ATOMS : BH_PHASE_POSITIONS;
+	if (!good)
+		return BH_BUILT_PLANES;
+	if (!bh_structure_resolve(phase, arena, &err)) {
+		note(problems, section->place, &err);
+		return BH_BUILT_PLANES;
+	}
+	return check_clash(phase, problems) ? BH_BUILT : BH_BUILT_PLANES;
+}
+
+/* Whether a d stands in the list before. */
+static bool twice(const bh_phase *phase, size_t i)
+{
+	for (size_t k = 0; k < i; k++)
+		if (fabs(phase->list_d_A[k] / phase->list_d_A[i] - 1) < 1e-9)
+			return true;
+	return false;
+}
+
+/* False: memory is out. */
+static bool take_list(bh_phase *phase, bh_arena *arena, const bh_conf_entry *d,
+		      const bh_conf_entry *intensity)
+{
+	phase->list_d_A = bh_new(arena, double, d->count);
+	phase->list_intensity = bh_new(arena, double, d->count);
+	if (!phase->list_d_A || !phase->list_intensity)
 		return false;
-	if (!build_cell(phase, section, problems) || !good)
-		return false;
-	phase->kind = phase->site_count ? BH_PHASE_ATOMS : BH_PHASE_POSITIONS;
-	if (!bh_structure_resolve(phase, arena, &err))
-		return note(problems, section->place, &err);
-	if (bh_structure_clash(phase, 0.5, &i, &j, &distance))
-		return bh_problem(problems, phase->sites[j].place,
-				  i == j ? "images of site \"%s\" clash with site "
-					   "\"%s\": %.2f Å apart\n"
-					   "check its coordinates, the origin choice and "
-					   "the occupancies"
-					 : "sites \"%s\" and \"%s\" clash: %.2f Å "
-					   "apart\natoms stand at "
-					   "least 0.5 Å apart; occupancies at one place "
-					   "sum to at most 1",
-				  phase->sites[i].label, phase->sites[j].label, distance);
+	phase->list_count = d->count;
+	for (size_t i = 0; i < d->count; i++) {
+		phase->list_d_A[i] = d->values[i].number;
+		if (intensity && i < intensity->count)
+			phase->list_intensity[i] = intensity->values[i].number;
+	}
 	return true;
 }
 
@@ -244,40 +318,34 @@ static bool list(bh_phase *phase, bh_arena *arena, const bh_conf_section *sectio
 {
 	const bh_conf_entry *d = bh_conf_entry_of(section, "d");
 	const bh_conf_entry *intensity = bh_conf_entry_of(section, "intensity");
-	double ratio = number(section, "corundum_ratio"), most = 0;
+	const bh_conf_entry *ratio = bh_conf_entry_of(section, "corundum_ratio");
+	double most = 0;
+	bool good = true;
 
 	phase->kind = BH_PHASE_LIST;
-	phase->list_count = d->count;
-	phase->list_d_A = bh_new(arena, double, d->count);
-	phase->list_intensity = bh_new(arena, double, d->count);
-	if (!phase->list_d_A || !phase->list_intensity) {
+	phase->corundum_ratio = ratio ? ratio->values[0].number : 0;
+	if (!take_list(phase, arena, d, intensity)) {
 		problems->lost = true;
 		return false;
+	}
+	for (size_t i = 0; i < d->count; i++) {
+		most = fmax(most, phase->list_intensity[i]);
+		if (twice(phase, i))
+			good = bh_problem(
+				problems, d->values[i].place,
+				"d = %s Å stands twice in the list\ngive it once",
+				d->values[i].text);
 	}
 	if (intensity && intensity->count != d->count)
 		return bh_problem(problems, intensity->place,
 				  "\"intensity\" has %zu values, \"d\" has %zu\ngive one "
 				  "for each d",
 				  intensity->count, d->count);
-	for (size_t i = 0; i < d->count; i++) {
-		phase->list_d_A[i] = d->values[i].number;
-		phase->list_intensity[i] = intensity ? intensity->values[i].number : 0;
-		most = fmax(most, phase->list_intensity[i]);
-		for (size_t k = 0; k < i; k++)
-			if (fabs(phase->list_d_A[k] / phase->list_d_A[i] - 1) < 1e-9)
-				return bh_problem(
-					problems, d->values[i].place,
-					"d = %s Å stands twice in the list\ngive it once",
-					d->values[i].text);
-	}
-	phase->corundum_ratio = isfinite(ratio) ? ratio : 0;
-	if (phase->corundum_ratio > 0 && !(most > 0))
-		return bh_problem(problems,
-				  bh_conf_entry_of(section, "corundum_ratio")->place,
+	if (ratio && !(most > 0) && (intensity || !section->faulty))
+		return bh_problem(problems, ratio->place,
 				  "\"corundum_ratio\" needs intensities above 0\ngive "
-				  "\"intensity\", one "
-				  "for each d");
-	return true;
+				  "\"intensity\", one for each d");
+	return good;
 }
 
 /* Composition and density of a phase without atoms, as far as they are given. */
@@ -317,7 +385,7 @@ static bool texture(bh_phase *phase, const bh_conf_section *section,
 				  "\"march_axis\" has %zu values\nit needs 3: "
 				  "{h, k, l}",
 				  axis->count);
-	if ((march != NULL) != (axis != NULL))
+	if ((march != NULL) != (axis != NULL) && !section->faulty)
 		return bh_problem(problems, (march ? march : axis)->place,
 				  "\"%s\" stands alone\nmarch and march_axis go together",
 				  march ? "march" : "march_axis");
@@ -336,23 +404,24 @@ static bool texture(bh_phase *phase, const bh_conf_section *section,
 static bool list_target(bh_target *target, const bh_phase *phase,
 			const bh_conf_value *value, bh_problems *problems)
 {
+	int width = bh_suggest_cut(value->text, SHOWN);
 	double d_A, best = HUGE_VAL;
 
 	if (!bh_number_read(&d_A, value->text, strlen(value->text)))
 		return bh_problem(
 			problems, value->place,
-			"\"%s\" is no distance\na phase given as a list has targets like "
-			"\"3.29\" (Å)",
-			value->text);
+			"\"%.*s\" is no distance\na phase given as a list has targets "
+			"like \"3.29\" (Å)",
+			width, value->text);
 	for (size_t i = 0; i < phase->list_count; i++)
-		if (fabs(phase->list_d_A[i] / d_A - 1) < best) {
-			best = fabs(phase->list_d_A[i] / d_A - 1);
+		if (fabs(phase->list_d_A[i] - d_A) < best) {
+			best = fabs(phase->list_d_A[i] - d_A);
 			target->d_A = phase->list_d_A[i];
 		}
-	if (best > 0.005)
+	if (!(best <= 0.005 * target->d_A))
 		return bh_problem(
 			problems, value->place,
-			"d = %s Å is not in the list of \"%s\"\nnearest: %.5g Å",
+			"d = %.*s Å is not in the list of \"%s\"\nnearest: %.5g Å", width,
 			value->text, phase->name, target->d_A);
 	snprintf(target->text, sizeof target->text, "%.5g Å", target->d_A);
 	return true;
@@ -366,10 +435,9 @@ static bool plane_target(bh_target *target, const bh_phase *phase,
 
 	if (!bh_hkl_parse(h, value->text))
 		return bh_problem(problems, value->place,
-				  "\"%s\" is no plane\nlike \"1 0 4\", \"1,0,-4\", "
-				  "\"10-4\" or \"1 0 -1 "
-				  "4\"",
-				  value->text);
+				  "\"%.*s\" is no plane\nlike \"1 0 4\", \"1,0,-4\", "
+				  "\"10-4\" or \"1 0 -1 4\"",
+				  bh_suggest_cut(value->text, SHOWN), value->text);
 	if (bh_hkl_absent(&phase->group, h))
 		return bh_problem(problems, value->place,
 				  "%d %d %d is extinguished by %s: it never "
@@ -413,65 +481,77 @@ static bool goes_with(const bh_conf_section *section, const char *key, const cha
 {
 	const bh_conf_entry *entry = bh_conf_entry_of(section, key);
 
-	return !entry || bh_problem(problems, entry->place,
-				    "\"%s\" does not go with \"%s\"\na phase is a cell "
-				    "and space group, "
-				    "or a list of d",
-				    key, other);
+	return !entry || !bh_conf_entry_of(section, other) ||
+	       bh_problem(problems, entry->place,
+			  "\"%s\" does not go with \"%s\"\na phase is a cell and space "
+			  "group, or a list of d",
+			  key, other);
 }
 
-/* Which description it is: a crystal, or a list. */
-static bool describe(bh_phase *phase, bh_arena *arena, const bh_conf_section *section,
-		     bh_problems *problems)
+static bh_built describe_list(bh_phase *phase, bh_arena *arena,
+			      const bh_conf_section *section, bh_problems *problems)
 {
-	bool has_cell = bh_conf_entry_of(section, "cell"), good;
-	bool has_group = bh_conf_entry_of(section, "space_group");
+	bool good = goes_with(section, "cell", "d", problems);
 
-	if (bh_conf_entry_of(section, "d")) {
-		good = goes_with(section, "cell", "d", problems);
-		good = goes_with(section, "space_group", "d", problems) && good;
-		if (section->section_count > 0)
-			good = bh_problem(
-				problems, section->sections[0]->place,
-				"atoms do not go with \"d\"\na phase is a cell and space "
-				"group, or a list of d");
-		return list(phase, arena, section, problems) && good;
-	}
-	good = goes_with(section, "intensity", "cell", problems);
+	good = goes_with(section, "space_group", "d", problems) && good;
+	if (section->section_count > 0)
+		good = bh_problem(
+			problems, section->sections[0]->place,
+			"atoms do not go with \"d\"\na phase is a cell and space "
+			"group, or a list of d");
+	return list(phase, arena, section, problems) && good && !section->faulty
+		       ? BH_BUILT
+		       : BH_BUILT_PLANES;
+}
+
+static bh_built describe_crystal(bh_phase *phase, bh_arena *arena,
+				 const bh_conf_section *section, bh_problems *problems)
+{
+	bool has_cell = bh_conf_entry_of(section, "cell");
+	bool has_group = bh_conf_entry_of(section, "space_group");
+	bool good = goes_with(section, "intensity", "cell", problems);
+	bh_built built;
+
 	good = goes_with(section, "corundum_ratio", "cell", problems) && good;
-	if (!has_cell || !has_group)
-		return bh_problem(problems, section->place,
+	if ((!has_cell || !has_group) && !section->faulty)
+		good = bh_problem(problems, section->place,
 				  "phase \"%s\" has no \"%s\"\ngive space_group and "
 				  "cell, or a list of d",
 				  section->title, has_cell ? "space_group" : "cell");
-	return crystal(phase, arena, section, problems) && good;
+	built = crystal(phase, arena, section, problems);
+	return good || built == BH_BUILT_NOT ? built : BH_BUILT_PLANES;
 }
 
-bool bh_build_phase(bh_phase *phase, bh_arena *arena, const bh_conf_section *section,
-		    bh_problems *problems)
+bh_built bh_build_phase(bh_phase *phase, bh_arena *arena, const bh_conf_section *section,
+			bh_problems *problems)
 {
 	const bh_conf_entry *targets = bh_conf_entry_of(section, "targets");
 	double share = number(section, "share"), size = number(section, "size_nm");
-	bool good;
+	bh_built built;
+	bool good = true;
 
-	snprintf(phase->name, sizeof phase->name, "%s", section->title);
+	snprintf(phase->name, sizeof phase->name, "%.*s",
+		 bh_suggest_cut(section->title, sizeof phase->name - 1), section->title);
 	phase->place = section->place;
 	phase->share_frac = isfinite(share) ? share / 100 : -1;
 	phase->size_nm = isfinite(size) ? size : 0;
 	phase->strain = number(section, "strain");
 	phase->march = 1;
 	if (strlen(section->title) >= sizeof phase->name)
-		return bh_problem(
+		good = bh_problem(
 			problems, section->title_place,
 			"the name of a phase is longer than %zu bytes\nshorten it",
 			sizeof phase->name - 1);
-	if (!describe(phase, arena, section, problems))
-		return false;
-	good = substance(phase, arena, section, problems);
-	good = texture(phase, section, problems) && good;
-	for (size_t i = 0; targets && i < targets->count; i++)
+	built = bh_conf_entry_of(section, "d")
+			? describe_list(phase, arena, section, problems)
+			: describe_crystal(phase, arena, section, problems);
+	if (built != BH_BUILT_NOT) {
+		good = substance(phase, arena, section, problems) && good;
+		good = texture(phase, section, problems) && good;
+	}
+	for (size_t i = 0; built != BH_BUILT_NOT && targets && i < targets->count; i++)
 		good = bh_build_target(phase, arena, &targets->values[i], problems) !=
 			       SIZE_MAX &&
 		       good;
-	return good;
+	return good || built == BH_BUILT_NOT ? built : BH_BUILT_PLANES;
 }

@@ -8,6 +8,17 @@
 #include "physics/formula.h"
 #include "read/suggest.h"
 
+/* What the steps of one request share. */
+typedef struct {
+	bh_request *request;
+	bh_arena *arena;
+	const bh_conf_section *root;
+	const bh_read_options *options;
+	bh_problems *problems;
+	const bh_conf_section **sections; /* of the phases            */
+	bh_built *built;		  /* how far the phases went  */
+} work;
+
 static size_t sections_named(const bh_conf_section *root, const char *name)
 {
 	size_t n = 0;
@@ -17,29 +28,66 @@ static size_t sections_named(const bh_conf_section *root, const char *name)
 	return n;
 }
 
-static bool build_phases(bh_request *request, bh_arena *arena,
-			 const bh_conf_section *root, bh_problems *problems)
+static bool build_phases(work *w)
 {
+	size_t most = sections_named(w->root, "phase");
 	bool good = true;
 
-	request->phases = bh_new(arena, bh_phase, sections_named(root, "phase"));
-	if (!request->phases) {
-		problems->lost = true;
+	w->request->phases = bh_new(w->arena, bh_phase, most);
+	w->sections = bh_new(w->arena, const bh_conf_section *, most);
+	w->built = bh_new(w->arena, bh_built, most);
+	if (!w->request->phases || !w->sections || !w->built) {
+		w->problems->lost = true;
 		return false;
 	}
-	for (size_t i = 0; i < root->section_count; i++)
-		if (strcmp(root->sections[i]->name, "phase") == 0)
-			good = bh_build_phase(&request->phases[request->phase_count++],
-					      arena, root->sections[i], problems) &&
-			       good;
+	for (size_t i = 0; i < w->root->section_count; i++) {
+		size_t n = w->request->phase_count;
+
+		if (strcmp(w->root->sections[i]->name, "phase") != 0)
+			continue;
+		w->request->phase_count++;
+		w->sections[n] = w->root->sections[i];
+		w->built[n] = bh_build_phase(&w->request->phases[n], w->arena,
+					     w->sections[n], w->problems);
+		good = good && w->built[n] == BH_BUILT;
+	}
 	return good;
 }
 
-/* One phase may leave its share out: it gets the rest. Nothing is scaled silently. */
-static bool settle_shares(bh_request *request, const bh_conf_section *root,
-			  bh_problems *problems)
+/* The shares of all phases can be added up: those without share leave it out. */
+static bool shares_are_known(const work *w)
 {
-	double sum = request->amorphous_frac;
+	const bh_conf_section *specimen = bh_conf_section_of(w->root, "specimen");
+
+	if (w->root->lacks || w->request->phase_count == 0 ||
+	    (specimen && specimen->faulty && !bh_conf_entry_of(specimen, "amorphous")))
+		return false;
+	for (size_t i = 0; i < w->request->phase_count; i++)
+		if (!(w->request->phases[i].share_frac >= 0) && w->sections[i]->faulty)
+			return false;
+	return true;
+}
+
+/* Where the last share stands, else the amorphous part: there the sum is known. */
+static bh_place place_of_sum(const work *w)
+{
+	const bh_conf_entry *entry = NULL;
+
+	for (size_t i = w->request->phase_count; i > 0 && !entry; i--)
+		entry = bh_conf_entry_of(w->sections[i - 1], "share");
+	if (!entry)
+		entry = bh_conf_entry_of(bh_conf_section_of(w->root, "specimen"),
+					 "amorphous");
+	return entry ? entry->values[0].place : w->root->place;
+}
+
+/* One phase may leave its share out: it gets the rest. Nothing is scaled silently, beyond the
+ * last digits that people write. */
+static bool settle_shares(work *w)
+{
+	static const double slack = 5e-4;
+	bh_request *request = w->request;
+	double sum = request->amorphous_frac, crystalline;
 	bh_phase *rest = NULL;
 
 	for (size_t i = 0; i < request->phase_count; i++) {
@@ -50,38 +98,38 @@ static bool settle_shares(bh_request *request, const bh_conf_section *root,
 			continue;
 		}
 		if (rest)
-			return bh_problem(problems, phase->place,
-					  "phases \"%s\" and \"%s\" both have no "
-					  "share\nonly one may "
-					  "leave it out: it gets the rest",
+			return bh_problem(w->problems, phase->place,
+					  "phases \"%s\" and \"%s\" both have no share\n"
+					  "only one may leave it out: it gets the rest",
 					  rest->name, phase->name);
 		rest = phase;
 	}
-	if (sum > 1 + 5e-4)
-		return bh_problem(problems, root->place,
+	if (sum > 1 + slack)
+		return bh_problem(w->problems, place_of_sum(w),
 				  "the shares and the amorphous part sum to %.6g "
-				  "wt%%\nallowed: 100 in "
-				  "all",
+				  "wt%%\nallowed: 100 in all",
 				  100 * sum);
+	if (!rest && sum < 1 - slack)
+		return bh_problem(
+			w->problems, place_of_sum(w),
+			"the shares sum to %.6g wt%%: %.6g wt%% is missing\nadd "
+			"it, or leave the share of one phase out: it gets the "
+			"rest",
+			100 * sum, 100 * (1 - sum));
 	if (rest)
-		rest->share_frac = sum < 1 ? 1 - sum : 0;
-	else if (sum < 1 - 5e-4)
-		return bh_problem(problems, root->place,
-				  "the shares sum to %.6g wt%%: %.6g wt%% is "
-				  "missing\nadd it, or leave "
-				  "the share of one phase out: it gets the rest",
-				  100 * sum, 100 * (1 - sum));
-	else
-		for (size_t i = 0; i < request->phase_count; i++)
-			request->phases[i].share_frac *= (1 - request->amorphous_frac) /
-							 (sum - request->amorphous_frac);
+		rest->share_frac = fmax(1 - sum, 0);
+	crystalline = rest ? fmax(sum, 1) - request->amorphous_frac
+			   : sum - request->amorphous_frac;
+	for (size_t i = 0; i < request->phase_count && crystalline > 0; i++)
+		request->phases[i].share_frac *=
+			(1 - request->amorphous_frac) / crystalline;
 	return true;
 }
 
-static bool build_specimen(bh_request *request, bh_arena *arena,
-			   const bh_conf_section *root, bh_problems *problems)
+static bool build_specimen(work *w)
 {
-	const bh_conf_section *s = bh_conf_section_of(root, "specimen");
+	const bh_conf_section *s = bh_conf_section_of(w->root, "specimen");
+	bh_request *request = w->request;
 	const bh_conf_entry *formula = bh_conf_entry_of(s, "amorphous_formula");
 	bh_specimen *to = &request->specimen;
 	bh_err err = { BH_OK, 0, 0, "", "", "" };
@@ -102,30 +150,33 @@ static bool build_specimen(bh_request *request, bh_arena *arena,
 		return true;
 	snprintf(request->amorphous_formula, sizeof request->amorphous_formula, "%s",
 		 formula->values[0].text);
-	if (bh_formula_read(&request->amorphous, arena, formula->values[0].text, &err))
+	if (bh_formula_read(&request->amorphous, w->arena, formula->values[0].text, &err))
 		return true;
-	return bh_problem(problems, formula->values[0].place, "%s\n%s", err.what,
+	return bh_problem(w->problems, formula->values[0].place, "%s\n%s", err.what,
 			  err.hint);
 }
 
-static size_t phase_named(const bh_request *request, const bh_conf_value *value,
-			  bh_problems *problems)
+static size_t phase_named(const work *w, const bh_conf_value *value)
 {
+	enum { SHOWN = 40 };
 	bh_suggestion near = { 0 };
 	char list[200] = "";
 
-	for (size_t i = 0; i < request->phase_count; i++) {
+	for (size_t i = 0; i < w->request->phase_count; i++) {
+		const char *name = w->request->phases[i].name;
 		size_t used = strlen(list);
 
-		if (strcmp(request->phases[i].name, value->text) == 0)
+		if (strcmp(name, value->text) == 0)
 			return i;
-		bh_suggest(&near, value->text, request->phases[i].name);
-		snprintf(list + used, sizeof list - used, "%s%.40s", used ? ", " : "",
-			 request->phases[i].name);
+		bh_suggest(&near, value->text, name);
+		if (used + SHOWN + 4 < sizeof list)
+			snprintf(list + used, sizeof list - used, "%s%.*s",
+				 used ? ", " : "", bh_suggest_cut(name, SHOWN), name);
 	}
-	bh_problem(problems, value->place, "there is no phase \"%s\"\n%s%s%sphases: %s",
-		   value->text, near.word ? "did you mean \"" : "",
-		   near.word ? near.word : "", near.word ? "\"? " : "", list);
+	if (w->root->lacks) /* it may stand in what was left out */
+		return SIZE_MAX;
+	bh_problem(w->problems, value->place, "there is no phase \"%s\"\n%sphases: %s",
+		   value->text, bh_suggest_hint(&near), *list ? list : "none");
 	return SIZE_MAX;
 }
 
@@ -135,53 +186,63 @@ static bool has_rates(const bh_phase *phase)
 	       (phase->kind == BH_PHASE_LIST && phase->corundum_ratio > 0);
 }
 
-static bool build_line_aim(bh_request *request, bh_aim *aim, bh_arena *arena,
-			   const bh_conf_section *s, bh_problems *problems)
+/* Whether lines of a phase have counts, where that can be said. */
+static bool check_counts(const work *w, const bh_conf_value *name, size_t i)
 {
-	const bh_conf_value *name = &bh_conf_entry_of(s, "phase")->values[0];
+	const bh_phase *phase = &w->request->phases[i];
+
+	if (w->built[i] == BH_BUILT && !has_rates(phase))
+		return bh_problem(w->problems, name->place,
+				  "\"%s\" has no rates: nothing is known of its "
+				  "counts\ngive it atoms, or a d list with a "
+				  "corundum_ratio; or drop the aim",
+				  phase->name);
+	if (fabs(phase->share_frac) > 0)
+		return true;
+	return bh_problem(w->problems, name->place,
+			  "the share of \"%s\" is 0: its lines have no counts\ngive it a "
+			  "share, or drop the aim",
+			  phase->name);
+}
+
+static bool build_line_aim(work *w, bh_aim *aim, const bh_conf_section *s)
+{
+	const bh_conf_entry *name = bh_conf_entry_of(s, "phase");
+	const bh_conf_entry *plane = bh_conf_entry_of(s, "plane");
 	double area = bh_conf_number(BH_FILE_REQUEST, s, "aim line", "area_error");
 	double position =
 		bh_conf_number(BH_FILE_REQUEST, s, "aim line", "position_error");
-	bh_phase *phase;
+	bool good = !s->faulty;
 
-	aim->phase = phase_named(request, name, problems);
-	if (aim->phase == SIZE_MAX)
-		return false;
-	if (isnan(area) && isnan(position))
-		return bh_problem(problems, s->place,
+	if (isnan(area) && isnan(position) && good)
+		good = bh_problem(w->problems, s->place,
 				  "the aim asks for nothing\ngive area_error (%%), "
 				  "position_error (°2θ), or both");
-	phase = &request->phases[aim->phase];
-	if (!has_rates(phase))
-		return bh_problem(problems, name->place,
-				  "\"%s\" has no rates: nothing is known of its "
-				  "counts\ngive it atoms, or "
-				  "a d list with a corundum_ratio; or drop the aim",
-				  phase->name);
-	if (!(phase->share_frac > 0))
-		return bh_problem(problems, name->place,
-				  "the share of \"%s\" is 0: its lines have no "
-				  "counts\ngive it a share, or drop the aim",
-				  phase->name);
-	aim->target = bh_build_target(phase, arena,
-				      &bh_conf_entry_of(s, "plane")->values[0], problems);
 	aim->area_error_frac = isnan(area) ? 0 : area / 100;
 	aim->position_error_deg = isnan(position) ? 0 : position;
-	return aim->target != SIZE_MAX;
+	aim->phase = name ? phase_named(w, &name->values[0]) : SIZE_MAX;
+	if (aim->phase == SIZE_MAX)
+		return false;
+	if (!check_counts(w, &name->values[0], aim->phase) || !plane ||
+	    w->built[aim->phase] == BH_BUILT_NOT)
+		return false;
+	aim->target = bh_build_target(&w->request->phases[aim->phase], w->arena,
+				      &plane->values[0], w->problems);
+	return aim->target != SIZE_MAX && good;
 }
 
-static bool build_aims(bh_request *request, bh_arena *arena, const bh_conf_section *root,
-		       bh_problems *problems)
+static bool build_aims(work *w)
 {
+	bh_request *request = w->request;
 	bool good = true;
 
-	request->aims = bh_new(arena, bh_aim, sections_named(root, "aim"));
+	request->aims = bh_new(w->arena, bh_aim, sections_named(w->root, "aim"));
 	if (!request->aims) {
-		problems->lost = true;
+		w->problems->lost = true;
 		return false;
 	}
-	for (size_t i = 0; i < root->section_count; i++) {
-		const bh_conf_section *s = root->sections[i];
+	for (size_t i = 0; i < w->root->section_count; i++) {
+		const bh_conf_section *s = w->root->sections[i];
 		bh_aim *aim = &request->aims[request->aim_count];
 
 		if (strcmp(s->name, "aim") != 0)
@@ -191,7 +252,7 @@ static bool build_aims(bh_request *request, bh_arena *arena, const bh_conf_secti
 		aim->kind = strcmp(s->key_section, "aim line") == 0 ? BH_AIM_LINE
 								    : BH_AIM_SURVEY;
 		if (aim->kind == BH_AIM_LINE)
-			good = build_line_aim(request, aim, arena, s, problems) && good;
+			good = build_line_aim(w, aim, s) && good;
 		else
 			aim->at_frac =
 				bh_conf_number(BH_FILE_REQUEST, s, "aim survey", "at") /
@@ -201,16 +262,17 @@ static bool build_aims(bh_request *request, bh_arena *arena, const bh_conf_secti
 }
 
 /* With no aim: each target's area to 3 %, and a survey at 5 wt%. */
-static bool default_aims(bh_request *request, bh_arena *arena, bh_problems *problems)
+static bool default_aims(work *w)
 {
 	static const double area_error_frac = 0.03, survey_frac = 0.05;
+	bh_request *request = w->request;
 	size_t most = 1;
 
 	for (size_t i = 0; i < request->phase_count; i++)
 		most += request->phases[i].target_count;
-	request->aims = bh_new(arena, bh_aim, most);
+	request->aims = bh_new(w->arena, bh_aim, most);
 	if (!request->aims) {
-		problems->lost = true;
+		w->problems->lost = true;
 		return false;
 	}
 	for (size_t i = 0; i < request->phase_count; i++) {
@@ -229,6 +291,32 @@ static bool default_aims(bh_request *request, bh_arena *arena, bh_problems *prob
 							.at_frac = survey_frac,
 							.by_default = true };
 	return true;
+}
+
+/* Counts follow from what the whole specimen absorbs. A request for positions only (no aim but
+ * the survey that stands there by default) may leave compositions out. */
+static bool check_compositions(const work *w)
+{
+	const bh_request *request = w->request;
+	bool good = true;
+
+	if (request->aim_count == 1 && request->aims[0].by_default)
+		return true;
+	for (size_t i = 0; i < request->phase_count; i++) {
+		const bh_phase *phase = &request->phases[i];
+		bool formula = phase->composition.count > 0;
+
+		if (!(phase->share_frac > 0) || (formula && phase->density_g_cm3 > 0))
+			continue;
+		good = bh_problem(w->problems, phase->place,
+				  "phase \"%s\" has a share but no %s: no count can be "
+				  "foreseen for any phase\ngive its %s, or share = 0",
+				  phase->name, formula ? "density" : "formula",
+				  formula		     ? "density"
+				  : phase->density_g_cm3 > 0 ? "formula"
+							     : "formula and density");
+	}
+	return good;
 }
 
 static const bh_anode *offered(const bh_instrument *instrument, const char *symbol)
@@ -252,8 +340,9 @@ static bool add_anode(bh_request *request, const char *symbol, bh_place place,
 			 request->instrument->tubes[i].anode->symbol);
 	}
 	if (!anode)
-		return bh_problem(problems, place, "%s has no %.40s tube\nit offers: %s",
-				  request->instrument->name, symbol, list);
+		return bh_problem(problems, place, "%s has no %.*s tube\nit offers: %s",
+				  request->instrument->name, bh_suggest_cut(symbol, 40),
+				  symbol, list);
 	for (size_t i = 0; i < request->anode_count; i++)
 		if (request->anodes[i] == anode)
 			return bh_problem(problems, place,
@@ -310,33 +399,44 @@ static bool limits(bh_request *request, const bh_conf_section *root,
 			  instrument->two_theta_max_deg);
 }
 
-bool bh_build_request(bh_request *request, bh_arena *arena, const bh_conf_section *root,
-		      const bh_read_options *options, bh_problems *problems)
+static void take_booking(bh_request *request, const bh_conf_section *root)
 {
 	const bh_conf_section *booking = bh_conf_section_of(root, "booking");
 	double longest = bh_conf_number(BH_FILE_REQUEST, booking, "booking", "longest");
-	bool good = problems->count == 0;
 
-	snprintf(request->title, sizeof request->title, "%s",
-		 bh_conf_text(BH_FILE_REQUEST, root, "", "title"));
 	request->booking.longest_s = isnan(longest) ? 0 : longest;
 	request->booking.most_ranges = (size_t)bh_conf_number(BH_FILE_REQUEST, booking,
 							      "booking", "most_ranges");
 	request->booking.reserve_frac =
 		bh_conf_number(BH_FILE_REQUEST, booking, "booking", "reserve") / 100;
+}
+
+bool bh_build_request(bh_request *request, bh_arena *arena, const bh_conf_section *root,
+		      const bh_read_options *options, bh_problems *problems)
+{
+	work w = { request, arena, root, options, problems, NULL, NULL };
+	bool good = !root->faulty;
+
+	snprintf(request->title, sizeof request->title, "%s",
+		 bh_conf_text(BH_FILE_REQUEST, root, "", "title"));
+	take_booking(request, root);
 	request->share_factor =
 		bh_conf_number(BH_FILE_REQUEST, bh_conf_section_of(root, "unsure"),
 			       "unsure", "share_factor");
-	good = build_specimen(request, arena, root, problems) && good;
-	good = build_phases(request, arena, root, problems) && good;
+	good = build_specimen(&w) && good;
+	good = build_phases(&w) && good;
 	if (request->instrument) {
 		good = choose_anodes(request, root, options, problems) && good;
 		good = limits(request, root, problems) && good;
 	}
+	if (problems->lost)
+		return false;
+	if (!shares_are_known(&w) || !settle_shares(&w))
+		good = false;
+	good = build_aims(&w) && good;
 	if (!good) /* what follows needs all of the phases */
 		return false;
-	if (!settle_shares(request, root, problems) ||
-	    !build_aims(request, arena, root, problems))
+	if (request->aim_count == 0 && !default_aims(&w))
 		return false;
-	return request->aim_count > 0 || default_aims(request, arena, problems);
+	return check_compositions(&w);
 }

@@ -29,9 +29,12 @@ const bh_section_kind bh_section_kinds[] = {
 /* clang-format on */
 const size_t bh_section_kind_count = sizeof bh_section_kinds / sizeof *bh_section_kinds;
 
+enum { SHOWN = 60 };
+
 typedef struct {
 	bh_key_file file;
-	bool whole;
+	bool whole; /* nothing was passed over in scanning              */
+	bool torn;  /* what stands in which section is a guess          */
 	bh_problems *problems;
 } checker;
 
@@ -59,50 +62,86 @@ static void join(char *list, size_t room, const char *name)
 		snprintf(list + used, room - used, ", ...");
 }
 
-static bool unknown_section(const checker *c, const bh_scan_section *s,
-			    const char *parent)
+/* A key of this file's kind, in whatever section. */
+static const bh_key *key_anywhere(bh_key_file file, const char *name)
 {
-	bh_suggestion near = { 0 };
-	char list[240] = "";
+	for (size_t i = 0; i < bh_key_count; i++)
+		if (bh_keys[i].file == file && strcmp(bh_keys[i].name, name) == 0)
+			return &bh_keys[i];
+	return NULL;
+}
 
+static const bh_section_kind *kind_anywhere(bh_key_file file, const char *name)
+{
+	for (size_t i = 0; i < bh_section_kind_count; i++)
+		if (bh_section_kinds[i].file == file &&
+		    strcmp(bh_section_kinds[i].name, name) == 0)
+			return &bh_section_kinds[i];
+	return NULL;
+}
+
+/* Where a misplaced word would be right, as the start of a hint. */
+static const char *belongs(char hint[120], const checker *c, const char *name)
+{
+	const bh_section_kind *kind = kind_anywhere(c->file, name);
+	const bh_key *key = key_anywhere(c->file, name);
+
+	*hint = '\0';
+	if (kind)
+		snprintf(hint, 120, "it is a section%s%s: %s %s{ ... }. ",
+			 *kind->parent ? " of " : "", kind->parent, name,
+			 kind->titled ? "\"name\" " : "");
+	else if (key)
+		snprintf(hint, 120, "it is a key of %s. ",
+			 *key->section ? key->section : "the top level");
+	return hint;
+}
+
+static bool unknown_section(const checker *c, const bh_scan_section *s,
+			    const char *parent, const char *section)
+{
+	int width = bh_suggest_cut(s->name, SHOWN);
+	bh_suggestion near = { 0 };
+	char list[200] = "", hint[120];
+
+	if (c->torn && kind_anywhere(c->file, s->name))
+		return false; /* its place is a guess */
+	if (bh_key_find(c->file, section, s->name))
+		return bh_problem(c->problems, s->place,
+				  "\"%.*s\" is a key, not a section\nlike %.*s = ...",
+				  width, s->name, width, s->name);
 	for (size_t i = 0; i < bh_section_kind_count; i++)
 		if (bh_section_kinds[i].file == c->file &&
 		    strcmp(bh_section_kinds[i].parent, parent) == 0) {
 			bh_suggest(&near, s->name, bh_section_kinds[i].name);
 			join(list, sizeof list, bh_section_kinds[i].name);
 		}
-	if (near.word)
-		return bh_problem(
-			c->problems, s->place,
-			"unknown section \"%s\"\ndid you mean \"%s\"? allowed: %s",
-			s->name, near.word, list);
 	return bh_problem(c->problems, s->place,
-			  "unknown section \"%s\"\nallowed here: %s", s->name,
+			  "unknown section \"%.*s\"%s%s%s\n%s%sallowed here: %s", width,
+			  s->name, *parent ? " in \"" : "", parent, *parent ? "\"" : "",
+			  belongs(hint, c, s->name), bh_suggest_hint(&near),
 			  *list ? list : "no section");
 }
 
-static bool unknown_key(const checker *c, const bh_scan_key *key, const char *section,
-			const char *name)
+static bool unknown_key(const checker *c, const bh_scan_key *key, const char *section)
 {
+	int width = bh_suggest_cut(key->name, SHOWN);
 	bh_suggestion near = { 0 };
-	char list[240] = "", where[64] = "";
+	char list[240] = "", hint[120];
 
+	if (c->torn && key_anywhere(c->file, key->name))
+		return false; /* its place is a guess */
 	for (size_t i = 0; i < bh_key_count; i++)
 		if (bh_keys[i].file == c->file &&
 		    strcmp(bh_keys[i].section, section) == 0) {
 			bh_suggest(&near, key->name, bh_keys[i].name);
 			join(list, sizeof list, bh_keys[i].name);
 		}
-	if (*name)
-		snprintf(where, sizeof where, " in \"%.40s\"", name);
-	if (near.word)
-		return bh_problem(
-			c->problems, key->place,
-			"unknown key \"%s\"%s\ndid you mean \"%s\"? allowed: %s",
-			key->name, where, near.word, list);
 	return bh_problem(c->problems, key->place,
-			  "unknown key \"%s\"%s\nallowed here: %s", key->name, where,
-			  list);
+			  "unknown key \"%.*s\"%s%s%s\n%s%sallowed here: %s", width,
+			  key->name, *section ? " in \"" : "", section,
+			  *section ? "\"" : "", belongs(hint, c, key->name),
+			  bh_suggest_hint(&near), list);
 }
 
 static bool one_of(const char *words, const char *text)
@@ -135,10 +174,9 @@ static bool bad_word(const checker *c, const bh_key *key, const bh_scan_value *v
 		bh_suggest(&near, value->text, save);
 		save += n + !last;
 	}
-	return bh_problem(c->problems, value->place,
-			  "\"%s\" is \"%s\"\n%s%s%sallowed: %s", key->name, value->text,
-			  near.word ? "did you mean \"" : "", near.word ? near.word : "",
-			  near.word ? "\"? " : "", list);
+	return bh_problem(c->problems, value->place, "\"%s\" is \"%.*s\"\n%sallowed: %s",
+			  key->name, bh_suggest_cut(value->text, SHOWN), value->text,
+			  bh_suggest_hint(&near), list);
 }
 
 bool bh_check_number(double *number, const bh_key *key, const char *text)
@@ -158,46 +196,65 @@ static bool check_numeric(const checker *c, const bh_key *key, const bh_scan_val
 {
 	bool whole = key->type == BH_KEY_WHOLE || key->type == BH_KEY_WHOLES;
 	const char *unit = *key->unit ? " " : "";
+	int width = bh_suggest_cut(value->text, SHOWN);
 	double number;
 
 	if (!bh_check_number(&number, key, value->text) ||
 	    (whole && fabs(number - round(number)) > 0))
 		return bh_problem(
 			c->problems, value->place,
-			"\"%s\" is \"%s\", not a %snumber\nallowed: %g to %g%s%s",
-			key->name, value->text, whole ? "whole " : "", key->low,
+			"\"%s\" is \"%.*s\", not a %snumber\nallowed: %g to %g%s%s",
+			key->name, width, value->text, whole ? "whole " : "", key->low,
 			key->high, unit, key->unit);
 	if (!(number >= key->low && number <= key->high))
 		return bh_problem(c->problems, value->place,
-				  "\"%s\" is %s\nallowed: %g to %g%s%s", key->name,
-				  value->text, key->low, key->high, unit, key->unit);
+				  "\"%s\" is %.*s\nallowed: %g to %g%s%s", key->name,
+				  width, value->text, key->low, key->high, unit,
+				  key->unit);
 	return true;
+}
+
+static bool check_duration(const checker *c, const bh_key *key,
+			   const bh_scan_value *value)
+{
+	double seconds;
+
+	if (!bh_check_number(&seconds, key, value->text))
+		return bh_problem(
+			c->problems, value->place,
+			"\"%s\" is \"%.*s\", not a duration\nlike \"2 h\", \"90 "
+			"min\", \"1 h 30 min\"",
+			key->name, bh_suggest_cut(value->text, SHOWN), value->text);
+	if (!(seconds >= key->low && seconds <= key->high))
+		return bh_problem(c->problems, value->place,
+				  "\"%s\" is \"%.*s\"\nallowed: %g s to %g h", key->name,
+				  bh_suggest_cut(value->text, SHOWN), value->text,
+				  key->low, key->high / 3600);
+	return true;
+}
+
+static bool check_text(const checker *c, const bh_key *key, const bh_scan_value *value)
+{
+	if (strlen(value->text) > (size_t)key->high)
+		return bh_problem(c->problems, value->place,
+				  "\"%s\" is longer than %g bytes\nshorten it", key->name,
+				  key->high);
+	return *value->text || (key->fallback && !*key->fallback) ||
+	       bh_problem(c->problems, value->place, "\"%s\" is empty\n%s", key->name,
+			  key->help);
 }
 
 static bool check_value(const checker *c, const bh_key *key, const bh_scan_value *value)
 {
-	double seconds;
-
 	switch (key->type) {
 	case BH_KEY_WORD:
 		return one_of(key->words, value->text) || bad_word(c, key, value);
 	case BH_KEY_FLAG:
 		return one_of("true false", value->text) || bad_word(c, key, value);
 	case BH_KEY_DURATION:
-		return bh_check_number(&seconds, key, value->text) ||
-		       bh_problem(c->problems, value->place,
-				  "\"%s\" is \"%s\", not a duration\nlike \"2 h\", \"90 "
-				  "min\", \"1 h 30 "
-				  "min\"",
-				  key->name, value->text);
+		return check_duration(c, key, value);
 	case BH_KEY_TEXT:
-		if (strlen(value->text) > (size_t)key->high)
-			return bh_problem(c->problems, value->place,
-					  "\"%s\" is longer than %g bytes\nshorten it",
-					  key->name, key->high);
-		return *value->text || (key->fallback && !*key->fallback) ||
-		       bh_problem(c->problems, value->place, "\"%s\" is empty\n%s",
-				  key->name, key->help);
+		return check_text(c, key, value);
 	case BH_KEY_TEXTS:
 		return *value->text ||
 		       bh_problem(c->problems, value->place,
@@ -270,30 +327,43 @@ const char *bh_check_key_section(const bh_scan_section *section, bh_key_file fil
 			return aims[i];
 		bh_suggest(&near, section->title ? section->title : "", kind);
 	}
-	bh_problem(problems, section->title ? section->title_place : section->place,
-		   "no such aim: \"%s\"\n%s%s%sallowed: line, survey",
-		   section->title ? section->title : "",
-		   near.word ? "did you mean \"" : "", near.word ? near.word : "",
-		   near.word ? "\"? " : "");
+	if (section->title && *section->title) /* else its lack is noted */
+		bh_problem(problems, section->title_place,
+			   "no such aim: \"%.*s\"\n%sallowed: line, survey",
+			   bh_suggest_cut(section->title, SHOWN), section->title,
+			   bh_suggest_hint(&near));
 	return NULL;
 }
 
 static bool check_section(const checker *c, bh_scan_section *s, const char *section);
 
-static bool check_titles(const checker *c, const bh_scan_section *parent,
-			 const bh_scan_section *s, const bh_section_kind *kind)
+static bool check_titles(const checker *c, const bh_scan_section *s,
+			 const bh_section_kind *kind)
 {
-	bool good = true;
+	static const struct {
+		const char *section, *title;
+	} examples[] = { { "tube", "Cu" }, { "aim", "line" }, { "site", "Fe" } };
+	const char *example = "quartz";
 
+	for (size_t i = 0; i < sizeof examples / sizeof *examples; i++)
+		if (strcmp(s->name, examples[i].section) == 0)
+			example = examples[i].title;
 	if (kind->titled && (!s->title || !*s->title))
-		good = bh_problem(c->problems, s->place,
+		return bh_problem(c->problems, s->place,
 				  "\"%s\" needs a name\nlike %s \"%s\" { ... }", s->name,
-				  s->name,
-				  strcmp(s->name, "tube") == 0 ? "Cu" : "quartz");
+				  s->name, example);
 	if (!kind->titled && s->title)
-		good = bh_problem(c->problems, s->title_place,
+		return bh_problem(c->problems, s->title_place,
 				  "\"%s\" takes no name\nlike %s { ... }", s->name,
 				  s->name);
+	return true;
+}
+
+/* Sections that may stand once only, and names that may. Any number of aims and sites of one
+ * name is good. */
+static bool check_once(const checker *c, const bh_scan_section *parent,
+		       const bh_scan_section *s, const bh_section_kind *kind)
+{
 	for (size_t i = 0; parent->sections[i] != s; i++) {
 		const bh_scan_section *other = parent->sections[i];
 
@@ -301,39 +371,44 @@ static bool check_titles(const checker *c, const bh_scan_section *parent,
 			continue;
 		if (!kind->many)
 			return bh_problem(c->problems, s->place,
-					  "\"%s\" is given twice\nit stands in "
-					  "line %d already",
+					  "\"%s\" is given twice\nit stands in line %d "
+					  "already",
 					  s->name, other->place.line);
 		if (strcmp(s->name, "aim") != 0 && strcmp(s->name, "site") != 0 &&
 		    s->title && other->title && strcmp(other->title, s->title) == 0)
 			return bh_problem(c->problems, s->title_place,
-					  "%s \"%s\" is given twice\nit "
-					  "stands in line %d already",
-					  s->name, s->title, other->place.line);
+					  "%s \"%.*s\" is given twice\nit stands in "
+					  "line %d already",
+					  s->name, bh_suggest_cut(s->title, SHOWN),
+					  s->title, other->place.line);
 	}
-	return good;
+	return true;
 }
 
-static bool check_subsections(const checker *c, bh_scan_section *s)
+static bool check_section(const checker *c, bh_scan_section *s, const char *section);
+
+/* A section within another; false: it is left out of what is parsed. */
+static bool check_subsection(const checker *c, const bh_scan_section *parent,
+			     bh_scan_section *s, const char *section)
+{
+	const bh_section_kind *kind = kind_of(c->file, parent->name, s->name);
+	const char *keys;
+	bool good;
+
+	if (!kind)
+		return unknown_section(c, s, parent->name, section);
+	good = check_titles(c, s, kind);
+	good = check_once(c, parent, s, kind) && good;
+	keys = bh_check_key_section(s, c->file, c->problems);
+	if (keys && !check_section(c, s, keys))
+		s->faulty = true;
+	return good && keys;
+}
+
+static bool check_needed(const checker *c, const bh_scan_section *s)
 {
 	bool good = true;
 
-	for (size_t i = 0; i < s->section_count; i++) {
-		bh_scan_section *sub = s->sections[i];
-		const bh_section_kind *kind = kind_of(c->file, s->name, sub->name);
-		const char *keys;
-
-		sub->bad = true;
-		if (!kind) {
-			good = unknown_section(c, sub, s->name);
-			continue;
-		}
-		sub->bad = !check_titles(c, s, sub, kind);
-		keys = bh_check_key_section(sub, c->file, c->problems);
-		if (!keys || !check_section(c, sub, keys))
-			sub->bad = true;
-		good = good && !sub->bad;
-	}
 	for (size_t i = 0; c->whole && i < bh_section_kind_count; i++) {
 		const bh_section_kind *kind = &bh_section_kinds[i];
 		bool found = false;
@@ -345,31 +420,43 @@ static bool check_subsections(const checker *c, bh_scan_section *s)
 			found = found || strcmp(s->sections[k]->name, kind->name) == 0;
 		if (!found)
 			good = bh_problem(c->problems, s->place,
-					  "there is no section \"%s\"\nit must "
-					  "be given",
+					  "there is no section \"%s\"\nit must be given",
 					  kind->name);
 	}
 	return good;
 }
 
+/* A key that is bad already was noted in scanning. */
 static bool check_section(const checker *c, bh_scan_section *s, const char *section)
 {
 	bool good = true;
 
 	for (size_t i = 0; i < s->key_count; i++) {
-		const bh_key *key = bh_key_find(c->file, section, s->keys[i].name);
+		bh_scan_key *written = &s->keys[i];
+		const bh_key *key = bh_key_find(c->file, section, written->name);
 
-		s->keys[i].bad = !(key ? check_key(c, &s->keys[i], key)
-				       : unknown_key(c, &s->keys[i], section, section));
-		good = good && !s->keys[i].bad;
+		if (!written->bad)
+			written->bad = !(key ? check_key(c, written, key)
+					     : unknown_key(c, written, section));
+		good = good && !written->bad;
 	}
 	good = check_missing(c, s, section) && good;
-	return check_subsections(c, s) && good;
+	for (size_t i = 0; i < s->section_count; i++) {
+		bh_scan_section *sub = s->sections[i];
+
+		if (!sub->bad)
+			sub->bad = !check_subsection(c, s, sub, section);
+		s->lacks = s->lacks || sub->bad;
+		good = good && !sub->bad && !sub->faulty;
+	}
+	good = check_needed(c, s) && good;
+	s->faulty = s->faulty || s->lacks || c->torn || !good;
+	return !s->faulty;
 }
 
 bool bh_check(bh_scan_section *root, bh_key_file file, bool whole, bh_problems *problems)
 {
-	checker c = { file, whole, problems };
+	checker c = { file, whole, root->torn, problems };
 
 	return check_section(&c, root, "");
 }

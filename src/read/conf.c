@@ -142,6 +142,8 @@ static bh_conf_section *build(builder *b, const bh_scan_section *s, cfg_t *cfg)
 	made->title = s->title ? s->title : "";
 	made->place = s->place;
 	made->title_place = s->title_place;
+	made->lacks = s->lacks;
+	made->faulty = s->faulty;
 	made->key_section = bh_check_key_section(s, b->file, &none);
 	made->entries = bh_new(b->arena, bh_conf_entry, s->key_count);
 	made->sections = bh_new(b->arena, bh_conf_section *, s->section_count);

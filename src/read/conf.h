@@ -28,7 +28,9 @@ typedef struct bh_conf_section {
 	const char *title;	 /* "" when there is none               */
 	const char *key_section; /* of the key table: "aim line"        */
 	bh_place place, title_place;
-	bh_conf_entry *entries; /* only what is written in the file    */
+	bool lacks;		/* a line or section of it was noted and left out    */
+	bool faulty;		/* as lacks, or a key was: it may not be complete    */
+	bh_conf_entry *entries; /* only what is written in the file, and good        */
 	size_t entry_count;
 	struct bh_conf_section **sections;
 	size_t section_count;

@@ -38,7 +38,7 @@ const bh_key bh_keys[] = {
 	{ REQ, "phase",        "formula",           TXT,  "",    0,      60,     "",       NULL, "composition of a phase without atoms" },
 	{ REQ, "phase",        "density",           NUM,  "g/cm³",0.05,  30,     "",       NULL, "density of a phase without atoms" },
 
-	{ REQ, "site",         "element",           TXT,  "",    0,      4,      NULL,     NULL, "symbol" },
+	{ REQ, "site",         "element",           TXT,  "",    0,      40,     NULL,     NULL, "symbol" },
 	{ REQ, "site",         "at",                NUMS, "",    -10,    10,     NULL,     NULL, "fractional coordinates {x, y, z}" },
 	{ REQ, "site",         "occupancy",         NUM,  "",    1e-6,   1,      "1",      NULL, "share of the site that is filled" },
 	{ REQ, "site",         "b_iso",             NUM,  "Å²",  0,      20,     "",       NULL, "displacement parameter B; left out: 0.5, and the plan says so" },
@@ -62,7 +62,7 @@ const bh_key bh_keys[] = {
 
 	{ REQ, "unsure",       "share_factor",      NUM,  "",    1,      10,     "1.5",    NULL, "minor shares may be off by this factor" },
 
-	{ REQ, "booking",      "longest",           DUR,  "",    0,      0,      "",       NULL, "like \"2 h\" or \"90 min\"; left out: no limit" },
+	{ REQ, "booking",      "longest",           DUR,  "",    1,      3.6e6,    "",       NULL, "like \"2 h\" or \"90 min\"; left out: no limit" },
 	{ REQ, "booking",      "most_ranges",       INT,  "",    1,      50,     "6",      NULL, "ranges that you care to type in" },
 	{ REQ, "booking",      "reserve",           NUM,  "%",   0,      90,     "0",      NULL, "of the booking, kept free" },
 
@@ -85,10 +85,10 @@ const bh_key bh_keys[] = {
 	{ INS, "tube",         "takeoff",           NUM,  "°",   1,      45,     "6",      NULL, "take-off angle" },
 	{ INS, "tube",         "focus_mm",          NUM,  "mm",  0.005,  5,      "0.04",   NULL, "width of the line focus as the specimen sees it" },
 	{ INS, "tube",         "window_um",         NUM,  "µm",  0,      2000,   "300",    NULL, "beryllium window" },
-	{ INS, "tube",         "foil",              TXT,  "",    0,      2,      "",       NULL, "element of the Kβ foil; left out: none" },
+	{ INS, "tube",         "foil",              TXT,  "",    0,      40,     "",       NULL, "element of the Kβ foil; left out: none" },
 	{ INS, "tube",         "foil_um",           NUM,  "µm",  0.1,    1000,   "",       NULL, "its thickness; needed with foil" },
 	{ INS, "tube",         "foil_side",         WRD,  "",    0,      0,      "detector", "tube detector", "where the foil stands" },
-	{ INS, "tube",         "monochromator",     NUM,  "°2θ", 2,      120,    "",       NULL, "setting angle of a crystal; left out: none" },
+	{ INS, "tube",         "monochromator",     NUM,  "°2θ", 0,      120,    "0",      NULL, "setting angle of a crystal, at least 2; 0: none" },
 	{ INS, "tube",         "monochromator_side",WRD,  "",    0,      0,      "detector", "tube detector", "where the crystal stands" },
 	{ INS, "tube",         "monochromator_mosaic", NUM, "°", 0.001,  5,      "0.4",    NULL, "angle that the crystal accepts" },
 	{ INS, "tube",         "monochromator_reflectivity", NUM, "", 0.001, 1,  "0.3",    NULL, "share of Kα that it passes on" },
@@ -99,7 +99,7 @@ const bh_key bh_keys[] = {
 
 	{ INS, "slits",        "divergence",        NUMS, "°",   0.01,   5,      "",       NULL, "fixed divergence slits offered" },
 	{ INS, "slits",        "usual",             NUM,  "°",   0.01,   5,      "",       NULL, "the one that is usually in; needed with divergence" },
-	{ INS, "slits",        "automatic_length_mm", NUM, "mm", 1,      100,    "",       NULL, "an automatic slit that lights this length at every angle" },
+	{ INS, "slits",        "automatic_length_mm", NUM, "mm", 0,      100,    "0",      NULL, "an automatic slit that lights this length, at least 1, at every angle; 0: none" },
 	{ INS, "slits",        "beam_width_mm",     NUM,  "mm",  0.5,    50,     "12",     NULL, "beam across the specimen" },
 	{ INS, "slits",        "soller_tube",       NUM,  "°",   0.5,    20,     "",       NULL, "axial opening on the tube's side; left out: none" },
 	{ INS, "slits",        "soller_detector",   NUM,  "°",   0.5,    20,     "",       NULL, "axial opening on the detector's side; left out: none" },
@@ -109,7 +109,7 @@ const bh_key bh_keys[] = {
 	{ INS, "detector",     "pitch_mm",          NUM,  "mm",  0.005,  2,      "",       NULL, "one channel; needed for a strip" },
 	{ INS, "detector",     "channels",          INT,  "",    2,      10000,  "",       NULL, "of a strip; needed for a strip" },
 	{ INS, "detector",     "height_mm",         NUM,  "mm",  0.5,    100,    NULL,     NULL, "across the diffraction plane" },
-	{ INS, "detector",     "sensor",            TXT,  "",    0,      2,      "",       NULL, "absorbing element; left out: efficiency alone" },
+	{ INS, "detector",     "sensor",            TXT,  "",    0,      40,     "",       NULL, "absorbing element; left out: efficiency alone" },
 	{ INS, "detector",     "sensor_um",         NUM,  "µm",  1,      10000,  "",       NULL, "its thickness; needed with sensor" },
 	{ INS, "detector",     "efficiency",        NUM,  "",    0.01,   1,      "0.95",   NULL, "share of absorbed photons that is counted" },
 	{ INS, "detector",     "resolution",        NUM,  "",    0.005,  2,      "0.2",    NULL, "ΔE/E at Kα, full width at half maximum" },

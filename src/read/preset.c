@@ -8,6 +8,7 @@
 #include <sys/stat.h>
 
 #include "read/build.h"
+#include "read/bytes.h"
 #include "read/conf.h"
 #include "read/scan.h"
 #include "read/suggest.h"
@@ -38,7 +39,7 @@ static const char *title_of(bh_arena *arena, const char *path)
 
 	if (!file)
 		return title;
-	if (bh_scan_load(&bytes, &length, arena, path, file, &ignored) &&
+	if (bh_bytes_load(&bytes, &length, arena, path, file, &ignored) &&
 	    bh_scan(&root, arena, path, bytes, length, &ignored))
 		for (size_t i = 0; i < root->key_count; i++)
 			if (strcmp(root->keys[i].name, "title") == 0)
@@ -136,10 +137,9 @@ bool bh_preset_find(const char **path, bh_arena *arena, const char *name_or_path
 		snprintf(list + used, sizeof list - used, "%s%s", used ? ", " : "",
 			 presets[i].name);
 	}
-	return bh_fail(err, BH_BAD_INPUT,
-		       "there is no instrument \"%s\"\n%s%s%sshipped: %s", name_or_path,
-		       near.word ? "did you mean \"" : "", near.word ? near.word : "",
-		       near.word ? "\"? " : "", *list ? list : "none was found");
+	return bh_fail(err, BH_BAD_INPUT, "there is no instrument \"%s\"\n%sshipped: %s",
+		       name_or_path, bh_suggest_hint(&near),
+		       *list ? list : "none was found");
 }
 
 bool bh_instrument_read(bh_instrument **instrument, bh_arena *arena, const char *name,
@@ -158,7 +158,7 @@ bool bh_instrument_read(bh_instrument **instrument, bh_arena *arena, const char 
 		snprintf(err.file, sizeof err.file, "%s", path);
 		return bh_problem_add(problems, &err);
 	}
-	good = bh_scan_load(&bytes, &length, arena, path, file, problems);
+	good = bh_bytes_load(&bytes, &length, arena, path, file, problems);
 	fclose(file);
 	*instrument = bh_new(arena, bh_instrument, 1);
 	if (!*instrument) {
@@ -166,8 +166,10 @@ bool bh_instrument_read(bh_instrument **instrument, bh_arena *arena, const char 
 		return false;
 	}
 	snprintf((*instrument)->name, sizeof(*instrument)->name, "%s", name);
-	return good &&
-	       bh_conf_read(&root, arena, BH_FILE_INSTRUMENT, path, bytes, length,
-			    problems) &&
-	       bh_build_instrument(*instrument, arena, root, problems);
+	if (!good)
+		return false;
+	good = bh_conf_read(&root, arena, BH_FILE_INSTRUMENT, path, bytes, length,
+			    problems);
+	/* what is good is looked at all the same: one run reports all problems */
+	return root && bh_build_instrument(*instrument, arena, root, problems) && good;
 }

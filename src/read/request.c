@@ -7,8 +7,8 @@
 #include <sys/stat.h>
 
 #include "read/build.h"
+#include "read/bytes.h"
 #include "read/preset.h"
-#include "read/scan.h"
 
 static bool unreadable(bh_problems *problems, const char *path, const char *why)
 {
@@ -17,6 +17,27 @@ static bool unreadable(bh_problems *problems, const char *path, const char *why)
 	bh_fail(&err, BH_BAD_SYSTEM, "cannot read: %s", why);
 	snprintf(err.file, sizeof err.file, "%s", path);
 	return bh_problem_add(problems, &err);
+}
+
+static bool is_path(const char *name)
+{
+	size_t n = strlen(name);
+
+	return strchr(name, '/') || (n > 5 && strcmp(name + n - 5, ".conf") == 0);
+}
+
+/* A path that stands in a request leads on from the request's folder; where nothing lies
+ * there, from the working folder. NULL: memory is out. */
+static const char *from_folder_of(bh_arena *arena, const char *file, const char *name)
+{
+	const char *slash = strrchr(file, '/');
+	struct stat info;
+	char *path;
+
+	if (!is_path(name) || name[0] == '/' || !slash)
+		return name;
+	path = bh_arena_format(arena, "%.*s/%s", (int)(slash - file), file, name);
+	return !path || stat(path, &info) == 0 ? path : name;
 }
 
 static bool load_instrument(bh_request *request, bh_arena *arena,
@@ -34,6 +55,12 @@ static bool load_instrument(bh_request *request, bh_arena *arena,
 	bh_instrument *instrument;
 	const char *path;
 
+	if (!options->instrument)
+		name = from_folder_of(arena, root->place.file, name);
+	if (!name) {
+		problems->lost = true;
+		return false;
+	}
 	if (!*name && problems->count > 0) /* it may stand in a line that is wrong */
 		return false;
 	if (!*name)
@@ -93,7 +120,7 @@ bool bh_request_read(bh_request **request, bh_arena *arena, const char *path,
 	stream = standard ? options->stdin_stream : fopen(path, "rb");
 	if (!stream)
 		return unreadable(problems, path, strerror(errno));
-	good = bh_scan_load(&bytes, &length, arena, name, stream, problems);
+	good = bh_bytes_load(&bytes, &length, arena, name, stream, problems);
 	if (!standard)
 		fclose(stream);
 	return good && bh_request_read_text(request, arena, name, bytes, length, options,
