@@ -10,7 +10,7 @@ VERSION := 0.1.0
 
 # What is needed, as pkg-config name : Debian package.
 NEEDS := libconfuse:libconfuse-dev libxrl:libxrl-dev spglib:libsymspg-dev \
-         jansson:libjansson-dev pangocairo:libpango1.0-dev fontconfig:libfontconfig-dev
+         jansson:libjansson-dev zlib:zlib1g-dev pangocairo:libpango1.0-dev fontconfig:libfontconfig-dev
 LIBS  := $(foreach need,$(NEEDS),$(firstword $(subst :, ,$(need))))
 BUILD_PACKAGES := gcc libc6-dev pkg-config $(foreach need,$(NEEDS),$(lastword $(subst :, ,$(need)))) \
                   fonts-dejavu-core

@@ -19,8 +19,11 @@ static int checked(bh_arena *arena, const bh_options *options)
 	bh_request *request;
 	int status = bh_open_request(&request, arena, options);
 
-	if (status == BH_EXIT_DONE && !options->quiet)
+	if (status == BH_EXIT_DONE && !options->quiet) {
+		for (size_t i = 0; i < request->phase_count; i++)
+			bh_report_remarks(&request->phases[i]);
 		summary(request);
+	}
 	return status;
 }
 

@@ -35,6 +35,9 @@ int bh_cmd_new(const bh_options *options);
 int bh_report(const bh_err *err);
 int bh_report_all(const bh_problems *problems);
 
+/* Say on stderr what a phase's structure file makes one mind. */
+void bh_report_remarks(const bh_phase *phase);
+
 /* Run a command's work with memory that lives as long as it. */
 int bh_with_arena(const bh_options *options,
 		  int (*work)(bh_arena *arena, const bh_options *options));

@@ -1,6 +1,7 @@
 #include "cli/options.h"
 
 #include <getopt.h>
+#include <math.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
@@ -13,6 +14,8 @@ enum {
 	OPT_INSTRUMENT,
 	OPT_WITHIN,
 	OPT_TWO_THETA,
+	OPT_D,
+	OPT_INTENSITY,
 	OPT_WITHOUT,
 	OPT_WHY,
 	OPT_QUIET,
@@ -34,6 +37,8 @@ static const row rows[] = {
 	{ OPT_INSTRUMENT, "instrument", "NAME",     "a preset or an instrument file, instead of the request's" },
 	{ OPT_WITHIN,     "within",     "DURATION", "the longest booking, instead of the request's: \"90 min\", \"2 h\"" },
 	{ OPT_TWO_THETA,  "two-theta",  "LO,HI",    "reflections: only between these angles, degrees" },
+	{ OPT_D,          "d",          "LO,HI",    "reflections: only between these distances, Å" },
+	{ OPT_INTENSITY,  "intensity",  "LEAST",    "reflections: only from this relative intensity on, percent of the strongest" },
 	{ OPT_WITHOUT,    "without",    "WHAT",     "reflections: leave out anomalous, charges, anisotropy (any of them, by commas)" },
 	{ OPT_WHY,        "why",        NULL,       "say where each number comes from: equation, inputs, source" },
 	{ OPT_QUIET,      "quiet",      NULL,       "nothing to the terminal but errors and what -o - asks for" },
@@ -83,7 +88,7 @@ static bool number_pair(double pair[2], const char *text)
 
 	return comma && bh_number_read(&pair[0], text, (size_t)(comma - text)) &&
 	       bh_number_read(&pair[1], comma + 1, strlen(comma + 1)) && pair[0] >= 0 &&
-	       pair[1] > pair[0] && pair[1] <= 180;
+	       pair[1] > pair[0];
 }
 
 static bool color(bh_options *options, const char *text, bh_err *err)
@@ -150,11 +155,21 @@ static bool take(bh_options *options, int id, const char *value, bh_err *err)
 			       value);
 	case OPT_TWO_THETA:
 		options->two_theta_given = true;
-		return number_pair(options->two_theta_deg, value) ||
+		return (number_pair(options->two_theta_deg, value) &&
+			options->two_theta_deg[1] <= 180) ||
 		       bh_fail(err, BH_BAD_INPUT,
 			       "--two-theta %s\nallowed: two angles, low,high, within 0 "
 			       "to 180",
 			       value);
+	case OPT_D:
+		return number_pair(options->d_A, value) ||
+		       bh_fail(err, BH_BAD_INPUT,
+			       "--d %s\nallowed: two distances in Å, low,high", value);
+	case OPT_INTENSITY:
+		return (bh_number_read(&options->least_percent, value, strlen(value)) &&
+			options->least_percent >= 0 && options->least_percent <= 100) ||
+		       bh_fail(err, BH_BAD_INPUT,
+			       "--intensity %s\nallowed: a percentage, 0 to 100", value);
 	case OPT_WITHOUT:
 		return without(options, value, err);
 	case OPT_COLOR:
@@ -199,7 +214,7 @@ bool bh_options_read(bh_options *options, int argc, char **argv, bh_err *err)
 	struct option longs[ROWS + 1];
 	int id;
 
-	*options = (bh_options){ .command = NULL };
+	*options = (bh_options){ .d_A = { 0, HUGE_VAL } };
 	fill_long(longs);
 	opterr = 0;
 	optind = 1;

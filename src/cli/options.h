@@ -23,6 +23,8 @@ typedef struct {
 	double within_s;	 /* 0: not given         */
 	double two_theta_deg[2]; /* low < high, else not given */
 	bool two_theta_given;
+	double d_A[2]; /* 0, HUGE_VAL: not given */
+	double least_percent;
 	bh_without without;
 	bool why, quiet, help, version;
 	bh_color color;

@@ -42,6 +42,20 @@ int bh_report_all(const bh_problems *problems)
 	return worst;
 }
 
+void bh_report_remarks(const bh_phase *phase)
+{
+	static const char *const words[] = { "note", "caution", "severe" };
+
+	for (size_t i = 0; i < phase->remark_count; i++) {
+		const bh_remark *r = &phase->remarks[i];
+
+		fprintf(stderr, "%s:%d:%d: %s: %s\n", r->place.file ? r->place.file : "",
+			r->place.line, r->place.col, words[r->severity], r->text);
+		if (*r->remedy)
+			fprintf(stderr, "    %s\n", r->remedy);
+	}
+}
+
 int bh_with_arena(const bh_options *options,
 		  int (*work)(bh_arena *arena, const bh_options *options))
 {

@@ -64,5 +64,6 @@ bool bh_find_footprint(bh_findings *findings);
 bool bh_find_thickness(bh_findings *findings);
 bool bh_find_grains(bh_findings *findings);
 bool bh_find_saturation(bh_findings *findings);
+bool bh_find_structure(bh_findings *findings);
 
 #endif

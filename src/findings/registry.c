@@ -19,6 +19,7 @@ const bh_finding_row bh_finding_rows[] = {
 	{ "footprint",    bh_find_footprint,    "beam longer or wider than the specimen, and the slit that cures it" },
 	{ "thickness",    bh_find_thickness,    "specimen too thin or too transparent" },
 	{ "grains",       bh_find_grains,       "too few crystallites in the right orientation" },
+	{ "structure",    bh_find_structure,    "what a structure file contradicts itself in, or leaves open" },
 	{ "saturation",   bh_find_saturation,   "strongest line beyond the detector's linear range" },
 };
 /* clang-format on */

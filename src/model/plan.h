@@ -89,7 +89,8 @@ typedef struct {
 typedef struct {
 	bh_arena *arena; /* owns all that hangs below                       */
 	const bh_request *request;
-	const bh_instrument *instrument;
+	const bh_instrument *instrument; /* NULL: a list of reflections alone */
+	const bh_anode *anode;
 	bh_phase *phases;   /* of the request, then the holder                 */
 	size_t phase_count; /* with holder                                     */
 	bool has_holder;    /* the last phase is the holder                    */

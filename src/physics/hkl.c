@@ -4,6 +4,7 @@
 #include <stdlib.h>
 #include <string.h>
 
+#include "base/units.h"
 #include "physics/cell.h"
 
 /* k = h R, row vector times rotation. */
@@ -313,6 +314,16 @@ bool bh_hkl_list(bh_hkl **planes, size_t *count, bh_arena *arena, const bh_cell 
 	*planes = c.planes;
 	*count = c.count;
 	return true;
+}
+
+double bh_hkl_estimate(const bh_cell *cell, const bh_space_group *group, double least_d_A)
+{
+	collection c = { .group = group };
+
+	collect_turnings(&c);
+	return 2 * BH_PI / 3 * bh_cell_volume_A3(cell) /
+	       (least_d_A * least_d_A * least_d_A) /
+	       ((double)c.turning_count * (double)(c.lattice_count + 1));
 }
 
 /* Next index of a text: an optional minus and digits (one digit when packed). */

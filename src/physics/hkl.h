@@ -34,6 +34,9 @@ void bh_hkl_standard(int standard[3], const bh_space_group *group, const int h[3
 bool bh_hkl_list(bh_hkl **planes, size_t *count, bh_arena *arena, const bh_cell *cell,
 		 const bh_space_group *group, double least_d_A, bh_err *err);
 
+/* About how many bh_hkl_list would find: half the points of the sphere over the rotations. */
+double bh_hkl_estimate(const bh_cell *cell, const bh_space_group *group, double least_d_A);
+
 /* Read a plane as people write it: "1 0 4", "1,0,-4", "10-4", "1 0 -1 4" (four indices
  * only when the third is minus the sum of the first two). Without separators each index
  * is one digit with an optional minus.

@@ -51,16 +51,66 @@ static bool is_target(const bh_phase *phase, const int h[3], double d_A)
 	return false;
 }
 
-/* Room for one phase's reflections, all zero, with d and indices filled. */
-static bool planes_of(bh_reflection **list, size_t *count, bh_arena *arena, size_t index,
-		      const bh_phase *phase, double least_d_A, bh_err *err)
+/* More than these take minutes or gigabytes; the first answers are then of no use anyway. */
+static const double most_planes = 3e6, most_terms = 2e11;
+
+static bool bearable(const bh_reflect_query *q, bh_err *err)
 {
+	double planes = bh_hkl_estimate(&q->phase->cell, &q->phase->group, q->least_d_A);
+	double terms = planes * (double)bh_amplitude_terms(q->phase);
+
+	return (planes < most_planes && terms < most_terms) ||
+	       bh_fail(err, BH_BAD_INPUT,
+		       "%s: about %.2g reflections of %zu sites are too many to compute\nask "
+		       "for a smaller range of angles (two_theta, --two-theta), or a longer "
+		       "wavelength (--anode)",
+		       q->phase->name, planes, q->phase->site_count);
+}
+
+static bool fill_f2(bh_reflection *list, size_t count, bh_arena *arena,
+		    const bh_reflect_query *q, bh_err *err)
+{
+	size_t energies = q->radiation->count;
+	double energy_keV[BH_MAX_LINES], *d_A = bh_new(arena, double, count);
+	double *f2 = bh_new(arena, double, count * energies);
+	int(*h)[3] = bh_arena_take(arena, count, sizeof *h);
+	bh_mat3 reciprocal;
+
+	if (!d_A || !f2 || !h)
+		return bh_fail_memory(err);
+	for (size_t k = 0; k < energies; k++)
+		energy_keV[k] = q->radiation->lines[k].energy_keV;
+	for (size_t i = 0; i < count; i++) {
+		d_A[i] = list[i].d_A;
+		memcpy(h[i], list[i].h, sizeof *h);
+	}
+	if (!bh_amplitude_f2_table(f2, q->phase,
+				   &(bh_f2_query){ (const int(*)[3])h, d_A, count,
+						   energy_keV, energies, q->without },
+				   err))
+		return false;
+	if (!bh_cell_reciprocal(&reciprocal, &q->phase->cell))
+		return true; /* a cell that closes nothing was refused at reading */
+	for (size_t i = 0; i < count; i++) {
+		list[i].f2 = f2[i * energies];
+		list[i].texture = texture(q->phase, &reciprocal, list[i].h);
+		for (size_t k = 0; k < energies; k++)
+			list[i].f2_lines[k] = f2[i * energies + k];
+	}
+	return true;
+}
+
+bool bh_reflect_planes(bh_reflection **list, size_t *count, bh_arena *arena,
+		       const bh_reflect_query *q, bh_err *err)
+{
+	const bh_phase *phase = q->phase;
 	bh_hkl *planes = NULL;
 
 	if (phase->kind == BH_PHASE_LIST)
 		*count = phase->list_count;
-	else if (!bh_hkl_list(&planes, count, arena, &phase->cell, &phase->group,
-			      least_d_A, err))
+	else if (!bearable(q, err) ||
+		 !bh_hkl_list(&planes, count, arena, &phase->cell, &phase->group,
+			      q->least_d_A, err))
 		return false;
 	*list = bh_new(arena, bh_reflection, *count);
 	if (!*list)
@@ -68,7 +118,7 @@ static bool planes_of(bh_reflection **list, size_t *count, bh_arena *arena, size
 	for (size_t i = 0; i < *count; i++) {
 		bh_reflection *r = &(*list)[i];
 
-		r->phase = index;
+		r->phase = q->index;
 		r->texture = 1;
 		r->d_A = planes ? planes[i].d_A : phase->list_d_A[i];
 		r->multiplicity = planes ? planes[i].multiplicity : 0;
@@ -76,41 +126,7 @@ static bool planes_of(bh_reflection **list, size_t *count, bh_arena *arena, size
 			memcpy(r->h, planes[i].h, sizeof r->h);
 		r->target = is_target(phase, r->h, r->d_A);
 	}
-	return true;
-}
-
-static bool fill_f2(bh_reflection *list, size_t count, bh_arena *arena,
-		    const bh_phase *phase, const bh_radiation *radiation,
-		    bh_without without, bh_err *err)
-{
-	double energy_keV[BH_MAX_LINES], *d_A = bh_new(arena, double, count);
-	double *f2 = bh_new(arena, double, count * radiation->count);
-	int(*h)[3] = bh_arena_take(arena, count, sizeof *h);
-	bh_mat3 reciprocal;
-
-	if (!d_A || !f2 || !h)
-		return bh_fail_memory(err);
-	for (size_t k = 0; k < radiation->count; k++)
-		energy_keV[k] = radiation->lines[k].energy_keV;
-	for (size_t i = 0; i < count; i++) {
-		d_A[i] = list[i].d_A;
-		memcpy(h[i], list[i].h, sizeof *h);
-	}
-	if (!bh_amplitude_f2_table(f2, phase,
-				   &(bh_f2_query){ (const int(*)[3])h, d_A, count,
-						   energy_keV, radiation->count,
-						   without },
-				   err))
-		return false;
-	if (!bh_cell_reciprocal(&reciprocal, &phase->cell))
-		return true; /* a cell that closes nothing was refused at reading */
-	for (size_t i = 0; i < count; i++) {
-		list[i].f2 = f2[i * radiation->count];
-		list[i].texture = texture(phase, &reciprocal, list[i].h);
-		for (size_t k = 0; k < radiation->count; k++)
-			list[i].f2_lines[k] = f2[i * radiation->count + k];
-	}
-	return true;
+	return phase->kind != BH_PHASE_ATOMS || fill_f2(*list, *count, arena, q, err);
 }
 
 /* The strongest line of a list stands to corundum 1 1 3 as its corundum ratio, the others as
@@ -312,13 +328,13 @@ bool bh_reflect(bh_signal *signal, bh_arena *arena, const bh_scene *scene, bh_er
 	for (size_t i = 0; i < scene->phase_count; i++) {
 		const bh_phase *phase = &scene->phases[i];
 		size_t count, old = signal->reflection_count;
-		bool done = planes_of(&list, &count, arena, i, phase, least_d_A, err);
+		bool done = bh_reflect_planes(
+			&list, &count, arena,
+			&(bh_reflect_query){ phase, i, least_d_A, radiation,
+					     scene->request->without },
+			err);
 
-		if (done && phase->kind == BH_PHASE_ATOMS)
-			done = fill_f2(list, count, arena, phase, radiation,
-				       scene->request->without,
-				       err);
-		else if (done && phase->kind == BH_PHASE_LIST &&
+		if (done && phase->kind == BH_PHASE_LIST &&
 			 phase->corundum_ratio > 0)
 			done = fill_list(list, phase, arena, err);
 		if (!done)

@@ -18,10 +18,4 @@
  *   false  memory is out */
 bool bh_structure_resolve(bh_phase *phase, bh_arena *arena, bh_err *err);
 
-/* A place that holds more than one atom: the occupancies of all images within within_A of a
- * site exceed 1. Returns true and names the nearest pair and its distance (site i against an
- * image of site j; i == j: two images of one site). */
-bool bh_structure_clash(const bh_phase *phase, double within_A, size_t *i, size_t *j,
-			double *distance_A);
-
 #endif

@@ -275,6 +275,50 @@ bool bh_symmetry_find(bh_space_group *group, bool *origin_open, bh_arena *arena,
 	return true;
 }
 
+/* The row that fits a symbol best among those that leave the cell as it is; 0: none. */
+static int row_for_cell(const bh_symbol *symbol, const bh_cell *cell)
+{
+	int found = 0, best = 0;
+
+	for (int i = 1; i <= ROWS; i++) {
+		SpglibSpacegroupType type;
+		bh_symbol_row row = row_of(i, &type);
+		int fit = bh_symbol_fit(symbol, &row), rotations[BH_MAX_IMAGES][3][3];
+		double shifts[BH_MAX_IMAGES][3];
+		bh_symop ops[BH_MAX_IMAGES];
+		bh_space_group group = { .ops = ops };
+
+		if (fit <= best || !bh_symbol_choice(symbol, &row))
+			continue;
+		group.op_count =
+			(size_t)spg_get_symmetry_from_database(rotations, shifts, i);
+		for (size_t n = 0; n < group.op_count; n++)
+			memcpy(ops[n].rotation, rotations[n], sizeof rotations[n]);
+		if (bh_symmetry_misfit(&group, cell) > BH_MISFIT_MOST)
+			continue;
+		found = i;
+		best = fit;
+	}
+	return found;
+}
+
+bool bh_symmetry_find_for_cell(bh_space_group *group, bool *origin_open, bh_arena *arena,
+			       const bh_symmetry_asked *asked, bh_err *err)
+{
+	SpglibSpacegroupType type;
+	bh_symbol_row found;
+	bh_symbol symbol;
+	int row = bh_symbol_read(&symbol, asked->text) ? row_for_cell(&symbol, asked->cell)
+						       : 0;
+
+	if (!row)
+		return bh_symmetry_find(group, origin_open, arena, asked->text, err);
+	found = row_of(row, &type);
+	*origin_open = type.choice[0] == '1' && symbol.choice[0] == '\0' &&
+		       !bh_symbol_is_hall(&symbol, &found);
+	return bh_symmetry_row(group, arena, row, err);
+}
+
 /* Whether the operations are those of a row of the table. */
 static bool is_row(const bh_space_group *group, int row)
 {
@@ -484,6 +528,24 @@ void bh_symmetry_settle(double exact[3], const bh_space_group *group, const bh_c
 	}
 	for (int j = 0; j < 3; j++)
 		exact[j] = at[j] + (n > 0 ? sum[j] / n : 0);
+}
+
+double bh_symmetry_image_A(const bh_space_group *group, const bh_cell *cell,
+			   const double at[3], double beyond_A)
+{
+	bh_mat3 metric = bh_cell_metric(cell);
+	double nearest = HUGE_VAL;
+
+	for (size_t i = 0; i < group->op_count; i++) {
+		double image[3], away[3], d_A;
+
+		move(image, &group->ops[i], at);
+		way(away, at, image);
+		d_A = sqrt(bh_mat3_form(&metric, away, away));
+		if (d_A >= beyond_A && d_A < nearest)
+			nearest = d_A;
+	}
+	return nearest;
 }
 
 size_t bh_symmetry_orbit(const bh_space_group *group, const bh_cell *cell,

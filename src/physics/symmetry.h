@@ -22,6 +22,19 @@
 bool bh_symmetry_find(bh_space_group *group, bool *origin_open, bh_arena *arena,
 		      const char *text, bh_err *err);
 
+/* A cell may miss the symmetry of its group by this much; see bh_symmetry_misfit. */
+#define BH_MISFIT_MOST 5e-3
+
+typedef struct {
+	const char *text;
+	const bh_cell *cell;
+} bh_symmetry_asked;
+
+/* The same for a cell that is known: of several settings with one symbol (hexagonal and
+ * rhombohedral axes, unique axes) the first that leaves the cell as it is. */
+bool bh_symmetry_find_for_cell(bh_space_group *group, bool *origin_open, bh_arena *arena,
+			       const bh_symmetry_asked *asked, bh_err *err);
+
 /* The group of one row of the database, 1 to 530. */
 bool bh_symmetry_row(bh_space_group *group, bh_arena *arena, int hall_number,
 		     bh_err *err);
@@ -55,6 +68,11 @@ enum { BH_MAX_IMAGES = 192 };
  * within_A (0: the default), so that 0.3333 becomes 1/3. */
 void bh_symmetry_settle(double exact[3], const bh_space_group *group, const bh_cell *cell,
 			const double at[3], double within_A);
+
+/* Distance, Å, from a point to the nearest of its images that is at least beyond_A away; HUGE_VAL
+ * when there is none within the neighbouring cells. */
+double bh_symmetry_image_A(const bh_space_group *group, const bh_cell *cell,
+			   const double at[3], double beyond_A);
 
 /* All images of a point in the cell, in [0, 1), doubles (closer than within_A, 0: the
  * default) merged.

@@ -64,7 +64,8 @@ static bool about_displacement_b(bh_plan *plan, bh_err *err)
 		bool missing = false;
 
 		for (size_t k = 0; k < phase->site_count; k++)
-			missing = missing || !phase->sites[k].b_known;
+			missing = missing || (!phase->sites[k].b_known &&
+					      !phase->sites[k].tensor_known);
 		if (missing)
 			names = bh_arena_format(plan->arena, "%s%s%s", names,
 						*names ? ", " : "", phase->name);
@@ -74,7 +75,7 @@ static bool about_displacement_b(bh_plan *plan, bh_err *err)
 	return !*names ||
 	       add(plan,
 		   bh_arena_format(plan->arena,
-				   "B = %.1f Å² where the request gives none (%s): "
+				   "B = %.1f Å² where no displacement is given (%s): "
 				   "strong at high "
 				   "angle, there intensities may be off by 20 %%.",
 				   BH_B_ISO_DEFAULT_A2, names),
@@ -99,9 +100,13 @@ static bool about_phases(bh_plan *plan, bh_err *err)
 				"%s has no atoms: positions only, its lines take no part "
 				"in overlap prices or count times.",
 				phase->name);
-		else
-			continue;
-		if (!add(plan, note, err))
+		if (note && !add(plan, note, err))
+			return false;
+		if (*phase->source &&
+		    !add(plan,
+			 bh_arena_format(plan->arena, "Structure of %s: %s.", phase->name,
+					 phase->source),
+			 err))
 			return false;
 	}
 	return true;
@@ -143,8 +148,8 @@ static bool about_model(bh_plan *plan, bh_err *err)
 		 err))
 		return false;
 	return add(plan,
-		   "Form factors are those of neutral atoms; f′ and f″ are good to 0.05 "
-		   "electrons, "
+		   "Form factors are those of neutral atoms, of ions where a structure file "
+		   "gives charges; f′ and f″ are good to 0.05 electrons, "
 		   "0.3 near an edge. Grains are taken as randomly oriented unless march "
 		   "is given.",
 		   err);

@@ -83,7 +83,8 @@ bool bh_plan_observe(bh_plan *plan, bh_arena *arena, const bh_request *request,
 
 	*plan = (bh_plan){ .arena = arena,
 			   .request = request,
-			   .instrument = request->instrument };
+			   .instrument = request->instrument,
+			   .anode = tube_of(request)->anode };
 	plan->displacement_shift_deg = bh_geometry_displacement_deg(
 		request->specimen.displacement_mm, request->instrument->radius_mm, 30);
 	if (!gather_phases(plan, err))

@@ -25,6 +25,21 @@ typedef enum {
 bh_built bh_build_phase(bh_phase *phase, bh_arena *arena, const bh_conf_section *section,
 			bh_problems *problems);
 
+/* A phase that is a cell with a space group, with or without atoms. */
+bh_built bh_build_crystal(bh_phase *phase, bh_arena *arena, const bh_conf_section *section,
+			  bh_problems *problems);
+
+/* A phase that is a structure file. */
+bh_built bh_build_file(bh_phase *phase, bh_arena *arena, const bh_conf_section *section,
+		       bh_problems *problems);
+
+/* Note an error of the physics at a place of the file; false. */
+bool bh_build_note(bh_problems *problems, bh_place place, const bh_err *err);
+
+/* Note a key that is given beside another that excludes it; true: it is not. */
+bool bh_build_goes_with(const bh_conf_section *section, const char *key, const char *other,
+			bh_problems *problems);
+
 /* Add a plane (or a d of a list) to a phase's targets unless it stands there.
  *   returns  its index; SIZE_MAX: noted */
 size_t bh_build_target(bh_phase *phase, bh_arena *arena, const bh_conf_value *value,

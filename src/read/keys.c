@@ -25,6 +25,7 @@ const bh_key bh_keys[] = {
 	{ REQ, "",             "two_theta",         NUMS, "°",   0,      180,    "",       NULL, "your own limits, {low, high}" },
 
 	{ REQ, "phase",        "space_group",       TXT,  "",    0,      60,     "",       NULL, "Hermann-Mauguin (short or full, any setting), Hall symbol, or number; :1 :2 :H :R choose" },
+	{ REQ, "phase",        "cif",               TXT,  "",    0,      400,    "",       NULL, "structure file (CIF, packed or not), from the request's folder; #NAME or #NUMBER behind it chooses a data block" },
 	{ REQ, "phase",        "cell",              NUMS, "Å, °",0.5,    500,    "",       NULL, "1 value for cubic, 2 for hexagonal, trigonal and tetragonal, 3 for orthorhombic, or all 6" },
 	{ REQ, "phase",        "share",             NUM,  "wt%", 0,      100,    "",       NULL, "of the whole specimen; one phase may leave it out: the rest" },
 	{ REQ, "phase",        "size_nm",           NUM,  "nm",  0.5,    1e5,    "",       NULL, "crystallite size; left out: no broadening by size" },

@@ -36,36 +36,34 @@ static json_t *text(const char *value)
 		json_array_append_new(array, (make));                                    \
 	return array
 
-static const bh_anode *anode_of(const bh_plan *plan)
-{
-	return plan->signal.setting.tube->anode;
-}
-
 static json_t *generator(const bh_plan *plan)
 {
 	const bh_setting *s = &plan->signal.setting;
 
+	if (!plan->instrument)
+		return json_null();
 	return json_pack("{s:o, s:o, s:o}", "kV", number(s->kV), "mA", number(s->mA),
 			 "overvoltage", number(plan->signal.radiation.overvoltage));
 }
 
-static json_t *emission_line(const bh_line *line)
+static json_t *emission_line(const bh_plan *plan, const bh_line *line)
 {
 	return json_pack("{s:o, s:o, s:o, s:o}", "name", text(line->name), "wavelength",
 			 number(line->wavelength_A), "energy", number(line->energy_keV),
-			 "flux", number(line->flux_s));
+			 "flux", number_if(plan->instrument, line->flux_s));
 }
 
 static json_t *emission_lines(const bh_plan *plan)
 {
 	ARRAY(plan->signal.radiation.count,
-	      emission_line(&plan->signal.radiation.lines[i]));
+	      emission_line(plan, &plan->signal.radiation.lines[i]));
 }
 
 static json_t *radiation(const bh_plan *plan)
 {
 	return json_pack("{s:o, s:o}", "lines", emission_lines(plan), "kbeta_ratio",
-			 number(plan->signal.radiation.kbeta_ratio));
+			 number_if(plan->instrument,
+				   plan->signal.radiation.kbeta_ratio));
 }
 
 static json_t *attenuations(const bh_plan *plan)
@@ -114,19 +112,27 @@ static json_t *atoms(const bh_phase *phase)
 	return whole(n);
 }
 
+static json_t *remarks(const bh_phase *phase)
+{
+	ARRAY(phase->remark_count, text(phase->remarks[i].text));
+}
+
 static json_t *phase_of(const bh_phase *phase)
 {
 	bool list = phase->kind == BH_PHASE_LIST;
 
-	return json_pack("{s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o}", "name",
+	return json_pack("{s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o}", "name",
 			 text(phase->name), "space_group",
 			 list ? json_null() : text(phase->group.symbol), "hall",
-			 list ? json_null() : text(phase->group.hall), "cell",
+			 *phase->group.hall ? text(phase->group.hall) : json_null(),
+			 "cell",
 			 cell(phase), "volume", number_if(!list, phase->volume_A3),
 			 "density",
 			 number_if(phase->density_g_cm3 > 0, phase->density_g_cm3),
 			 "formula", *phase->formula ? text(phase->formula) : json_null(),
-			 "share", number(100 * phase->share_frac), "atoms", atoms(phase));
+			 "share", number(100 * phase->share_frac), "atoms", atoms(phase),
+			 "source", *phase->source ? text(phase->source) : json_null(),
+			 "remarks", remarks(phase));
 }
 
 static json_t *phases(const bh_plan *plan)
@@ -306,8 +312,9 @@ static json_t *up_to_reflections(const bh_plan *plan)
 	return json_pack("{s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o, s:o}", "schema",
 			 text("beamhour/1"), "version", text(BH_VERSION), "request",
 			 text(plan->request->title), "anode",
-			 text(anode_of(plan)->symbol), "instrument",
-			 text(plan->instrument->name), "generator", generator(plan),
+			 text(plan->anode->symbol), "instrument",
+			 plan->instrument ? text(plan->instrument->name) : json_null(),
+			 "generator", generator(plan),
 			 "radiation", radiation(plan), "mixture", mixture(plan), "phases",
 			 phases(plan), "reflections", reflections(plan));
 }

@@ -100,15 +100,17 @@ void bh_put_row(bh_builder *b, bh_section *section, const char *const *cells)
 	if (!section)
 		return;
 	table = &section->table;
-	grown = bh_grow(b->arena, table->cells, const char *,
-			table->row_count * table->column_count,
-			(table->row_count + 1) * table->column_count);
-	if (!grown) {
-		b->lost = true;
-		return;
+	if ((table->row_count & (table->row_count - 1)) == 0) { /* 0 or a power of two: full */
+		grown = bh_grow(b->arena, table->cells, const char *,
+				table->row_count * table->column_count,
+				(2 * table->row_count + 1) * table->column_count);
+		if (!grown) {
+			b->lost = true;
+			return;
+		}
+		table->cells = grown;
 	}
-	table->cells = grown;
-	memcpy(grown + table->row_count * table->column_count, cells,
+	memcpy(table->cells + table->row_count * table->column_count, cells,
 	       table->column_count * sizeof *cells);
 	table->row_count++;
 }
@@ -166,9 +168,12 @@ bool bh_sheet_reflections(bh_sheet *sheet, bh_arena *arena, const bh_plan *plan,
 
 	*sheet = (bh_sheet){ .title = title_of(plan) };
 	sheet->subtitle =
-		bh_put(&b, "Reflections on %s, %s Kα1 %.6f Å", plan->instrument->name,
-		       plan->signal.setting.tube->anode->symbol,
+		bh_put(&b, "Reflections%s%s, %s Kα1 %.6f Å",
+		       plan->instrument ? " on " : "",
+		       plan->instrument ? plan->instrument->name : "",
+		       plan->anode->symbol,
 		       plan->signal.radiation.lines[0].wavelength_A);
+	bh_sheet_structures(&b);
 	bh_sheet_reflection_table(&b, plan->signal.in_range_count);
 	return !b.lost || bh_fail_memory(err);
 }

@@ -37,6 +37,7 @@ void bh_sheet_ranges(bh_builder *b);
 void bh_sheet_targets(bh_builder *b);
 void bh_sheet_aims(bh_builder *b);
 void bh_sheet_reflection_table(bh_builder *b, size_t most);
+void bh_sheet_structures(bh_builder *b);
 void bh_sheet_findings(bh_builder *b);
 void bh_sheet_steps(bh_builder *b);
 void bh_sheet_notes(bh_builder *b);

@@ -245,14 +245,16 @@ void bh_sheet_reflection_table(bh_builder *b, size_t most)
 		const bh_reflection *r = &signal->reflections[i];
 		const bh_phase *phase = &b->plan->phases[r->phase];
 		bool atoms = phase->kind == BH_PHASE_ATOMS;
+		bool same = i > 0 && chosen[i - 1] && r[-1].phase == r->phase &&
+			    r->d_A > r[-1].d_A * (1 - 1e-9);
 		const char *cells[COUNT(columns)] = {
 			bh_put_plane(b, r),
 			r->target ? "*" : "",
-			bh_put_fixed(b, r->d_A, 4),
-			bh_put_fixed(b, r->two_theta_deg, 3),
+			same ? "=" : bh_put_fixed(b, r->d_A, 4),
+			same ? "=" : bh_put_fixed(b, r->two_theta_deg, 3),
 			r->multiplicity ? bh_put(b, "%d", r->multiplicity) : "–",
 			atoms ? bh_put_digits(b, r->f2, 4) : "–",
-			bh_put_fixed(b, r->fwhm_deg, 3),
+			isfinite(r->fwhm_deg) ? bh_put_fixed(b, r->fwhm_deg, 3) : "–",
 			r->rate_known ? bh_put_digits(b, r->rate_cps_deg, 3) : "–",
 			atoms || r->rate_known ? bh_put_fixed(b, r->relative, 1) : "–",
 		};

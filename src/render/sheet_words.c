@@ -8,6 +8,49 @@ static void say(bh_builder *b, bh_section *s, const char *lead, const char *text
 	bh_put_item(b, s, (bh_item){ .lead = lead, .text = text, .then = "" });
 }
 
+/* What a phase is made of, and what its structure file makes one mind. */
+static void structure(bh_builder *b, bh_section *s, const bh_phase *phase)
+{
+	static const char *const words[] = { "note", "caution", "severe" };
+	const bh_cell *cell = &phase->cell;
+	size_t atoms = 0;
+
+	for (size_t i = 0; i < phase->site_count; i++)
+		atoms += (size_t)phase->sites[i].multiplicity;
+	say(b, s, phase->name,
+	    phase->kind == BH_PHASE_LIST
+		    ? "a list of d"
+		    : bh_put(b, "%s, %s × %s × %s Å, %s %s %s°, %s Å³%s%s%s",
+			     phase->group.symbol, bh_put_short(b, cell->a_A, 6),
+			     bh_put_short(b, cell->b_A, 6), bh_put_short(b, cell->c_A, 6),
+			     bh_put_short(b, cell->alpha_deg, 6),
+			     bh_put_short(b, cell->beta_deg, 6),
+			     bh_put_short(b, cell->gamma_deg, 6),
+			     bh_put_digits(b, phase->volume_A3, 5),
+			     *phase->formula ? bh_put(b, ", %s", phase->formula) : "",
+			     atoms ? bh_put(b, ", %zu atoms", atoms) : "",
+			     phase->density_g_cm3 > 0
+				     ? bh_put(b, ", %s g/cm³",
+					      bh_put_digits(b, phase->density_g_cm3, 4))
+				     : ""));
+	if (*phase->source)
+		say(b, s, "from", phase->source);
+	for (size_t i = 0; i < phase->remark_count; i++)
+		bh_put_item(b, s,
+			    (bh_item){ .lead = words[phase->remarks[i].severity],
+				       .text = phase->remarks[i].text,
+				       .then = phase->remarks[i].remedy,
+				       .weight = (int)phase->remarks[i].severity });
+}
+
+void bh_sheet_structures(bh_builder *b)
+{
+	bh_section *s = bh_put_section(b, BH_PART_NOTES, "Structures");
+
+	for (size_t i = 0; i < b->plan->phase_count; i++)
+		structure(b, s, &b->plan->phases[i]);
+}
+
 void bh_sheet_findings(bh_builder *b)
 {
 	static const char *const words[] = { "note", "caution", "severe" };

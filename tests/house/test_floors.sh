@@ -31,7 +31,7 @@ while read -r header door; do
 done <<< "$(grep -v '^#' tests/house/doors)"
 
 known='assert|ctype|dirent|errno|fcntl|float|getopt|inttypes|limits|locale|math|signal|stdarg'
-known+='|stdbool|stddef|stdint|stdio|stdlib|string|sys/.*|time|unistd|wchar'
+known+='|stdbool|stddef|stdint|stdio|stdlib|string|strings|sys/.*|time|unistd|wchar'
 verdict "no other foreign header" "$(
 	grep -nE '^#include <' src/*/*.[ch] | grep -vE "<($known)\.h>" |
 		grep -vE "<(.*/)?($(grep -v '^#' tests/house/doors | awk '{ print $1 }' | paste -sd'|'))>")"

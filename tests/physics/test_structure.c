@@ -6,6 +6,7 @@
 
 #include "base/units.h"
 #include "physics/amplitude.h"
+#include "physics/crowding.h"
 #include "physics/cell.h"
 #include "physics/hkl.h"
 #include "published/structures.h"
@@ -114,7 +115,7 @@ static void solid_solutions(void **state)
 	assert_near(phase.formula_units, 3, 1e-12, "Z");
 	assert_ratio(phase.density_g_cm3, 3 * mass_g / 0.602214076 / phase.volume_A3,
 		     2e-4, "density");
-	assert_false(bh_structure_clash(&phase, 0.5, &i, &j, &distance));
+	assert_false(bh_crowding_clash(&phase, 0.5, &i, &j, &distance));
 	phase = make(*state, &wustite);
 	assert_string_equal(phase.formula, "Fe0.945O");
 	assert_near(phase.formula_units, 4, 1e-12, "Z");
@@ -219,7 +220,7 @@ static void clashes(void **state)
 		bh_phase phase = make(*state, &rows[n].m);
 		size_t i = 99, j = 99;
 		double distance_A = -1;
-		bool clash = bh_structure_clash(&phase, 0.5, &i, &j, &distance_A);
+		bool clash = bh_crowding_clash(&phase, 0.5, &i, &j, &distance_A);
 
 		if (clash != rows[n].clash)
 			print_error("row %zu\n", n);
@@ -250,7 +251,7 @@ static void split_site(void **state)
 
 	assert_int_equal(phase.sites[1].multiplicity, 8);
 	assert_string_equal(phase.formula, "BaTiO3");
-	assert_false(bh_structure_clash(&phase, 0.5, &i, &j, &distance));
+	assert_false(bh_crowding_clash(&phase, 0.5, &i, &j, &distance));
 }
 
 /* F by the definition, one complex exponential an atom and operation. */

@@ -8,6 +8,7 @@
 
 #include "base/units.h"
 #include "physics/amplitude.h"
+#include "physics/crowding.h"
 #include "physics/bragg.h"
 #include "physics/cell.h"
 #include "physics/hkl.h"
@@ -120,7 +121,7 @@ static void every_crystal(void **state)
 
 		assert_near(phase.volume_A3, c->volume_A3, 6e-4, c->name);
 		assert_near(phase.density_g_cm3, c->density_g_cm3, 6e-4, c->name);
-		assert_false(bh_structure_clash(&phase, 0.5, &a, &b, &near_A));
+		assert_false(bh_crowding_clash(&phase, 0.5, &a, &b, &near_A));
 		for (size_t k = 0; k < CRYSTAL_LINES && c->lines[k].plane; k++) {
 			bh_hkl plane = plane_of(&phase, c->lines[k].plane);
 			double two_theta_deg, mine;
@@ -473,7 +474,7 @@ static void wrong_settings(void **state)
 	spinel.group = "F d -3 m:1";
 	phase = crystal_make(*state, &spinel, 0.5);
 	assert_true(phase.density_g_cm3 > 6 ||
-		    bh_structure_clash(&phase, 1.0, &a, &b, &near_A));
+		    bh_crowding_clash(&phase, 1.0, &a, &b, &near_A));
 }
 
 /* The same crystal in another cell: h' and x' by the change of axes. Column i of `axes` is the
